@@ -3,7 +3,9 @@ import type { QuantityKind } from './kinds.ts';
 import type { QuantityCode, QuantityFacts } from './wording.ts';
 
 /** A refusal of a number, before its place is known. */
-export type Refusal = { readonly [Code in QuantityCode]: { readonly code: Code; readonly facts: QuantityFacts[Code] } }[QuantityCode];
+export type Refusal = {
+  readonly [Code in QuantityCode]: { readonly code: Code; readonly facts: QuantityFacts[Code] };
+}[QuantityCode];
 
 export interface NumberRead {
   /** With a point, a hyphen for a minus, and the exponent as typed: `Number` reads it. */

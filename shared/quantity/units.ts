@@ -210,5 +210,8 @@ export function unitsSpeltLike(typed: string): readonly string[] {
 }
 
 function fold(spelling: string): string {
-  return spelling.toLowerCase().replace(/ω|\u2126/g, 'ohm').replace(/[µ\u03bc]/g, 'u');
+  return spelling
+    .toLowerCase()
+    .replace(/ω|\u2126/g, 'ohm')
+    .replace(/[µ\u03bc]/g, 'u');
 }

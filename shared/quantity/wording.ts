@@ -96,7 +96,8 @@ export const QUANTITY_WORDING: QuantityWording = {
   },
   'unit-wrong': {
     message: ({ unit, measures, quantity }) => `${unit} is a unit of ${measures}, but a ${quantity} is needed here.`,
-    hint: ({ expected }) => (expected === '' ? 'Write the number without a unit.' : `Expected a unit such as ${expected}.`),
+    hint: ({ expected }) =>
+      expected === '' ? 'Write the number without a unit.' : `Expected a unit such as ${expected}.`,
   },
   'prefix-case': {
     message: ({ typed }) => `Capitals and small letters differ in units, and ${typed} is not what it looks like.`,
