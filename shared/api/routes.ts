@@ -74,3 +74,6 @@ export const ROUTES = {
 } as const satisfies Record<string, RouteRow>;
 
 export type RouteName = keyof typeof ROUTES;
+
+/** Every answer under /api carries the release that gave it, so that a page of an older release can say so. */
+export const RELEASE_HEADER = 'quadrille-release';
