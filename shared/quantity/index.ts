@@ -9,5 +9,13 @@ export { type Dimension, NONE, perDimension, powerOfDimension, sameDimension, ti
 export { coherentUnit, dimensionWords, kindOfDimension } from './dimension-words.ts';
 export { KINDS, type KindRow, PEAK_FACTORS, type QuantityKind, type Reading } from './kinds.ts';
 export { type ReadOptions, type ReadValue, readValue } from './read-value.ts';
-export { PREFIXES, readUnit, readUnitAt, toSi, type Unit, type UnitRead } from './units.ts';
+export { fromSi, PREFIXES, readUnit, readUnitAt, toSi, type Unit, type UnitRead } from './units.ts';
 export { QUANTITY_WORDING, type QuantityCode, type QuantityProblem } from './wording.ts';
+export {
+  type WriteOptions,
+  type Written,
+  type WrittenRange,
+  writeEntry,
+  writeRange,
+  writeValue,
+} from './write-value.ts';

@@ -38,8 +38,12 @@ interface Slice {
 interface Term extends Slice {
   readonly decimal: string;
   readonly unit: Unit | LevelUnit | null;
+  /** The unit as typed, or the whole term where none stands apart. */
+  readonly unitPlace: Slice;
 }
 
+/** More than any value needs; it keeps a text of 100,000 spaces from taking long. */
+const MOST_CHARACTERS = 200;
 const JOINT = /(\s+to\s+|\s*…\s*)|\s*(±|\+\/-|\+-)\s?/;
 
 /**
@@ -52,6 +56,8 @@ const JOINT = /(\s+to\s+|\s*…\s*)|\s*(±|\+\/-|\+-)\s?/;
 export function readValue(text: string, options: ReadOptions): Result<ReadValue, QuantityProblem> {
   const whole = trimmed({ text, start: 0 });
   if (whole.text === '') return refuse(whole, { code: 'value-missing', facts: { example: exampleOf(options) } });
+  if (whole.text.length > MOST_CHARACTERS)
+    return refuse(whole, { code: 'number-too-long', facts: { most: MOST_CHARACTERS } });
   const joint = JOINT.exec(whole.text);
   if (joint === null) return single(whole, options);
   if (options.mayBeRange === false)
@@ -115,7 +121,7 @@ function around(whole: Slice, left: Slice, right: Slice, options: ReadOptions): 
     const size = Number(second.decimal);
     ends = [peakOfLevel(middle - size, firstUnit), peakOfLevel(middle + size, firstUnit)];
   } else if (isLevel(secondUnit)) {
-    return refuse(right, wrongUnit(secondUnit, KINDS.level.dimension, options));
+    return refuse(second.unitPlace, wrongUnit(secondUnit, KINDS.level.dimension, options));
   } else {
     const middle = siOf(first, firstUnit, options);
     if (!middle.ok) return middle;
@@ -159,15 +165,16 @@ function readTerm(slice: Slice, options: ReadOptions): Result<Term, QuantityProb
   const marking = kind === null ? null : readMarking(text, kind);
   if (marking !== null) {
     if (!marking.ok) return refuse(slice, marking.error);
-    return ok({ ...slice, decimal: marking.value.decimal, unit: readUnit(marking.value.unit) });
+    return ok({ ...slice, decimal: marking.value.decimal, unit: readUnit(marking.value.unit), unitPlace: slice });
   }
   const number = readNumberAt(text, 0, options.unit !== 'required' && options.decimalComma === true);
-  if (!number.ok) return refuse(slice, number.error);
+  if (!number.ok) return refuse(numberPlace(slice, number.error), number.error);
   const { decimal, end } = number.value;
   const typed = text.slice(0, end);
   const tail = text.slice(end);
   const word = tail.trimStart();
-  if (word === '') return ok({ ...slice, decimal, unit: null });
+  if (word === '') return ok({ ...slice, decimal, unit: null, unitPlace: slice });
+  const unitPlace = { text: word, start: slice.start + text.length - word.length };
   if (/^[0-9]/.test(word)) {
     return refuse(slice, {
       code: 'digit-groups',
@@ -179,8 +186,8 @@ function readTerm(slice: Slice, options: ReadOptions): Result<Term, QuantityProb
     return refuse(slice, { code: 'too-many-spaces', facts: { write: shortened(`${typed} ${word}`) } });
   }
   const unit = isLevelUnit(word) ? word : readUnit(word);
-  if (unit !== null) return ok({ ...slice, decimal, unit });
-  return refuse({ text: word, start: slice.start + end + gap.length }, unknownUnit(typed, word, options));
+  if (unit !== null) return ok({ ...slice, decimal, unit, unitPlace });
+  return refuse(unitPlace, unknownUnit(word, options));
 }
 
 /** The unit that a term counts in, checked against what is wanted; `other` is the unit at the range's other end. */
@@ -199,8 +206,8 @@ function unitOf(
     return refuse(term, { code: 'unit-missing', facts: { typed, quantity, write: exampleOf(options, typed) } });
   }
   if (isLevel(unit)) {
-    if (kind !== 'voltage') return refuse(term, wrongUnit(unit, KINDS.level.dimension, options));
-    return options.reading === 'rms' ? ok(unit) : refuse(term, { code: 'level-needs-rms', facts: { unit } });
+    if (kind !== 'voltage') return refuse(term.unitPlace, wrongUnit(unit, KINDS.level.dimension, options));
+    return options.reading === 'rms' ? ok(unit) : refuse(term.unitPlace, { code: 'level-needs-rms', facts: { unit } });
   }
   if (fits(unit, options)) return ok(unit);
   if (kind === 'resistance' && unit.unit === 'K') {
@@ -209,7 +216,7 @@ function unitOf(
       facts: { typed: term.text, write: `${term.decimal.replace('-', '−')}k` },
     });
   }
-  return refuse(term, wrongUnit(unit.unit, unit.dimension, options, unit.isAngle));
+  return refuse(term.unitPlace, wrongUnit(unit.unit, unit.dimension, options, unit.isAngle));
 }
 
 const ONE: Unit = { unit: '', dimension: NONE, factor: 1, offset: 0, isAngle: false };
@@ -224,7 +231,7 @@ function fits(unit: Unit, { kind }: ReadOptions): boolean {
 
 function siOf(term: Term, unit: Unit | LevelUnit, options: ReadOptions): Result<number, QuantityProblem> {
   if (isLevel(unit)) return checkedEnd(peakOfLevel(Number(term.decimal), unit), term, options);
-  const isDifference = kindOf(options) === 'temperature-difference';
+  const isDifference = options.kind === 'temperature-difference';
   const value = toSi(term.decimal, unit, isDifference) * peakFactor(options);
   if (value === 0 && unit.offset === 0 && /[1-9]/.test(term.decimal.split(/e/i)[0] ?? '')) {
     return refuse(term, { code: 'number-too-small', facts: { typed: shortened(term.text) } });
@@ -289,19 +296,30 @@ function exampleOf(options: ReadOptions, number = '1'): string {
 }
 
 function wrongUnit(unit: string, dimension: Dimension, options: ReadOptions, isAngle = false): Refusal {
-  const measures = isAngle && sameDimension(dimension, NONE) ? KINDS.angle.words : dimensionWords(dimension);
+  const measured = dimensionWords(dimension);
+  const measures = !isAngle ? measured : sameDimension(dimension, NONE) ? KINDS.angle.words : `angular ${measured}`;
   return { code: 'unit-wrong', facts: { unit, measures, quantity: wordsOf(options), expected: expectedUnit(options) } };
 }
 
-function unknownUnit(typed: string, word: string, options: ReadOptions): Refusal {
-  const near = unitsSpeltLike(word).filter((symbol) => {
-    const unit = readUnit(symbol);
-    return unit !== null && fits(unit, options);
-  });
+function unknownUnit(word: string, options: ReadOptions): Refusal {
+  const near = unitsSpeltLike(word).filter((symbol) => isFitting(symbol, options));
   const [only, ...others] = near;
   const isCase = only !== undefined && others.length === 0 && word.toLowerCase() === only.toLowerCase();
-  if (isCase) return { code: 'prefix-case', facts: { typed: `${typed} ${word}`, write: `${typed} ${only}` } };
+  if (isCase) return { code: 'prefix-case', facts: { typed: word, write: only } };
+  // `10 k`: a prefix whose unit was left out.
+  const completed = word.length === 1 ? word + expectedUnit(options) : '';
+  if (isFitting(completed, options)) near.push(readUnit(completed)?.unit ?? completed);
   return { code: 'unit-unknown', facts: { unit: shortened(word), near, expected: expectedUnit(options) } };
+}
+
+function isFitting(symbol: string, options: ReadOptions): boolean {
+  const unit = readUnit(symbol);
+  return unit !== null && fits(unit, options);
+}
+
+/** The number that a refusal quotes, or the whole term where it quotes something else. */
+function numberPlace(term: Slice, { facts }: Refusal): Slice {
+  return 'typed' in facts && term.text.startsWith(facts.typed) ? { text: facts.typed, start: term.start } : term;
 }
 
 function trimmed({ text, start }: Slice): Slice {

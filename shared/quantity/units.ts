@@ -201,6 +201,13 @@ export function toSi(decimal: string, unit: Pick<Unit, 'factor' | 'offset'>, dif
   return difference ? product : product + unit.offset;
 }
 
+/** Undoes `toSi`: the number that is written before the unit, decimal prefixes exactly. */
+export function fromSi(si: number, unit: Pick<Unit, 'factor' | 'offset'>, difference = false): number {
+  const exponent = powerOfTen(unit.factor);
+  const product = difference ? si : si - unit.offset;
+  return exponent === null ? product / unit.factor : scaled(product, -exponent);
+}
+
 /** Units of the same dimension whose spelling differs only by case or by Ω and µ written in letters; for hints. */
 export function unitsSpeltLike(typed: string): readonly string[] {
   const folded = fold(typed);

@@ -54,7 +54,7 @@ export const QUANTITY_WORDING: QuantityWording = {
     message: ({ typed }) => `Unexpected “${typed}”, expected a number.`,
   },
   'number-too-long': {
-    message: ({ most }) => `This number is longer than the ${most} characters that are read.`,
+    message: ({ most }) => `This value is longer than the ${most} characters that are read.`,
     hint: () => 'Round it, or write it with a prefix or an exponent.',
   },
   'number-too-large': {
@@ -84,7 +84,7 @@ export const QUANTITY_WORDING: QuantityWording = {
     hint: ({ write }) => `Write ${write}.`,
   },
   'unit-missing': {
-    message: ({ typed, quantity }) => `${typed} has no unit, but a ${quantity} needs one.`,
+    message: ({ typed, quantity }) => `${typed} has no unit, but ${one(quantity)} needs one.`,
     hint: ({ write }) => `Write ${write}, for example.`,
   },
   'unit-unknown': {
@@ -95,12 +95,13 @@ export const QUANTITY_WORDING: QuantityWording = {
     },
   },
   'unit-wrong': {
-    message: ({ unit, measures, quantity }) => `${unit} is a unit of ${measures}, but a ${quantity} is needed here.`,
+    message: ({ unit, measures, quantity }) =>
+      `${unit} measures ${one(measures)}, but ${one(quantity)} is needed here.`,
     hint: ({ expected }) =>
       expected === '' ? 'Write the number without a unit.' : `Expected a unit such as ${expected}.`,
   },
   'prefix-case': {
-    message: ({ typed }) => `Capitals and small letters differ in units, and ${typed} is not what it looks like.`,
+    message: ({ typed }) => `In “${typed}” a capital and a small letter are exchanged.`,
     hint: ({ write }) => `Write ${write}.`,
   },
   'level-needs-rms': {
@@ -122,3 +123,9 @@ export const QUANTITY_WORDING: QuantityWording = {
     hint: () => 'Leave out the minus.',
   },
 };
+
+/** A dimension without a name stands as its unit, V·Ω, and takes no article. */
+function one(noun: string): string {
+  if (!/^[a-zA-Z -]+$/.test(noun)) return noun;
+  return `${/^[aeiou]/.test(noun) ? 'an' : 'a'} ${noun}`;
+}
