@@ -1,4 +1,9 @@
-import type { Sample, UnboundedReason } from './outcome.ts';
+import { assertNever } from '#text';
+import { FUNCTIONS } from './functions.ts';
+import { linkScalar } from './link.ts';
+import { namesRead } from './order.ts';
+import type { NoValueReason, Sample, UnboundedReason } from './outcome.ts';
+import { formulaText } from './show.ts';
 import type { CheckedExpr } from './syntax.ts';
 
 /** The values that a formula was run on. */
@@ -9,12 +14,125 @@ export interface Values {
   sampleOf?(name: string): Sample | undefined;
 }
 
-/** Turns the number that a linked formula gave for these values into a Sample; walks the tree only if it is not finite. */
-export function sampleAt(_checked: CheckedExpr, _raw: number, _values: Values): Sample {
-  throw new Error('formula/explain is being written');
+type Evaluate = (part: CheckedExpr) => number;
+
+/**
+ * Turns the number that a linked formula gave for these values into a Sample; walks the tree only if it is not finite.
+ * Unbounded: the span is that of the operation which made the infinity, e.g. the division; no value: that of the
+ * operation which has none. Cost of the walk: the square of the size of the formula.
+ */
+export function sampleAt(checked: CheckedExpr, raw: number, values: Values): Sample {
+  if (Number.isFinite(raw)) return { kind: 'finite', si: raw };
+  const evaluate = evaluator(checked, values);
+  const cause = causeOf(checked, evaluate);
+  const upstream = cause.kind === 'name' ? values.sampleOf?.(cause.name) : undefined;
+  if (!Number.isNaN(raw)) {
+    const span = upstream?.kind === 'unbounded' ? upstream.span : cause.span;
+    return { kind: 'unbounded', sign: raw > 0 ? 1 : -1, span };
+  }
+  if (upstream?.kind === 'no-value') return upstream;
+  return { kind: 'no-value', reason: reasonOf(cause, evaluate), span: cause.span };
 }
 
 /** Finds why a formula is unbounded for these values; null if it is not. */
-export function unboundedReason(_checked: CheckedExpr, _values: Values): UnboundedReason | null {
-  throw new Error('formula/explain is being written');
+export function unboundedReason(checked: CheckedExpr, values: Values): UnboundedReason | null {
+  const evaluate = evaluator(checked, values);
+  const value = evaluate(checked);
+  if (Number.isNaN(value) || Number.isFinite(value)) return null;
+  const cause = causeOf(checked, evaluate);
+  if (cause.kind === 'name') return { kind: 'name', span: cause.span, name: cause.name };
+  if (cause.kind === 'call' && cause.name === 'parallel') return cancellingBranches(cause.span, cause.args);
+  const zero = zeroBehind(cause);
+  if (zero && evaluate(zero) === 0) return reasonOfZero(zero, evaluate);
+  return { kind: 'too-large', span: cause.span, term: formulaText(cause) };
+}
+
+/** Gives the value of any part of a formula. */
+function evaluator(checked: CheckedExpr, values: Values): Evaluate {
+  const names = namesRead(checked);
+  const frame = Float64Array.from(names, (name) => values.valueOf(name));
+  return (part) => linkScalar(part, (name) => names.indexOf(name))(frame);
+}
+
+/** The innermost part that gave the NaN or the infinity of the whole: its own operands do not. */
+function causeOf(whole: CheckedExpr, evaluate: Evaluate): CheckedExpr {
+  const value = evaluate(whole);
+  const isCause = Number.isNaN(value)
+    ? Number.isNaN
+    : (operand: number) => Math.abs(operand) === Number.POSITIVE_INFINITY;
+  const inner = operandsOf(whole, evaluate).find((operand) => isCause(evaluate(operand)));
+  return inner ? causeOf(inner, evaluate) : whole;
+}
+
+/** The parts that bear on the value: of an `if` the test, or the branch that it chose. */
+function operandsOf(expr: CheckedExpr, evaluate: Evaluate): readonly CheckedExpr[] {
+  switch (expr.kind) {
+    case 'number':
+    case 'quantity':
+    case 'constant':
+    case 'name':
+      return [];
+    case 'negate':
+    case 'not':
+      return [expr.of];
+    case 'arithmetic':
+    case 'compare':
+    case 'logic':
+      return [expr.left, expr.right];
+    case 'call': {
+      if (expr.name !== 'if') return expr.args;
+      const [test, yes, no] = expr.args;
+      const answer = test && evaluate(test);
+      const chosen = answer === 1 ? yes : answer === 0 ? no : test;
+      return chosen ? [chosen] : [];
+    }
+    default:
+      return assertNever(expr);
+  }
+}
+
+/** Why a part has no value though its operands have one. */
+function reasonOf(cause: CheckedExpr, evaluate: Evaluate): NoValueReason {
+  if (cause.kind === 'call') return FUNCTIONS.get(cause.name)?.noValue ?? 'not-a-number';
+  if (cause.kind !== 'arithmetic') return 'not-a-number';
+  const { operator } = cause;
+  switch (operator) {
+    case '+':
+    case '-':
+      return 'infinite-difference';
+    case '*':
+      return 'zero-times-infinite';
+    case '/':
+      return evaluate(cause.right) === 0 ? 'zero-over-zero' : 'infinite-over-infinite';
+    case '^':
+      return evaluate(cause.left) < 0 ? 'root-of-negative' : 'not-a-number';
+    default:
+      return assertNever(operator);
+  }
+}
+
+const LOGARITHMS: ReadonlySet<string> = new Set(['ln', 'log10', 'db', 'db_power']);
+
+/** The operand that makes a part unbounded by being zero: what is divided by, a base, what a logarithm is taken of. */
+function zeroBehind(cause: CheckedExpr): CheckedExpr | undefined {
+  if (cause.kind === 'arithmetic' && cause.operator === '/') return cause.right;
+  if (cause.kind === 'arithmetic' && cause.operator === '^') return cause.left;
+  return cause.kind === 'call' && LOGARITHMS.has(cause.name) ? cause.args[0] : undefined;
+}
+
+/** Follows a zero to the terms that cancel, or to the smallest expression that is zero. */
+function reasonOfZero(zero: CheckedExpr, evaluate: Evaluate): UnboundedReason {
+  if (zero.kind === 'arithmetic' && (zero.operator === '+' || zero.operator === '-') && evaluate(zero.left) !== 0) {
+    return { kind: 'cancel', span: zero.span, left: formulaText(zero.left), right: formulaText(zero.right) };
+  }
+  const inner = operandsOf(zero, evaluate).find((operand) => evaluate(operand) === 0);
+  // A function that is zero at zero: the zero came from inside. log10(1) has no such operand and stands for itself.
+  if (inner && zero.kind !== 'compare' && zero.kind !== 'logic') return reasonOfZero(inner, evaluate);
+  return { kind: 'zero', span: zero.span, term: formulaText(zero) };
+}
+
+/** Branches in parallel are unbounded where their conductances add up to zero. */
+function cancellingBranches(span: CheckedExpr['span'], args: readonly CheckedExpr[]): UnboundedReason {
+  const texts = args.map((arg) => formulaText(arg));
+  return { kind: 'cancel', span, left: texts.slice(0, -1).join(', '), right: texts.at(-1) ?? '' };
 }
