@@ -323,6 +323,8 @@ export const draftAuthor = pgTable(
     userId: text('user_id')
       .notNull()
       .references(() => user.id, { onDelete: 'cascade' }),
+    /** Set when somebody takes the invitation back: what this person still sends is kept to the side, not refused. */
+    removedAt: instant('removed_at'),
   },
   (t) => [primaryKey({ columns: [t.draftId, t.userId] })],
 );
