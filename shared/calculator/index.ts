@@ -1,8 +1,27 @@
 /**
  * The calculator of a page: its model as the document stores it, and what it comes to for a set of inputs.
- * Terms: given, choice, result, limit, example; sample (one point), outcome (a result, over its ranges).
- * Units: SI base units inside, levels in dB, temperatures in kelvin.
+ * Terms: given, choice, result, limit, example; field (a text and what was understood of it), sample (one point),
+ * outcome (a result, over its ranges), cure (the nearest change of one input that mends a limit).
+ * Order of use: `linkCalculator` once a document, then per change `readInputs` → `evaluate` → `describe…`.
+ * Units: SI base units inside, levels in dB, temperatures in kelvin, alternating quantities as peaks.
+ * Opens text, quantity and formula.
  */
+export { type Cure, findCure } from './cure.ts';
+export { type Described, type DescribedLimit, describeLimit, describeOutcome } from './describe.ts';
+export { type Evaluated, evaluate, evaluateInOrder } from './evaluate.ts';
+export { type ExampleRow, type ExampleRun, runExample } from './examples.ts';
+export { type Explanation, explainResult, type NumberSource } from './explain.ts';
+export {
+  type FieldProblem,
+  type InputField,
+  type InputOptions,
+  type Inputs,
+  type ReadField,
+  readInputs,
+  type Upstream,
+  withLastGood,
+} from './inputs.ts';
+export { type LinkedCalculator, type LinkedLimit, type LinkedResult, linkCalculator } from './link.ts';
 export type {
   CalculatorModel,
   Choice,
@@ -16,4 +35,6 @@ export type {
   ResultModel,
   Uncertainty,
 } from './model.ts';
-export type { Evaluation, LimitOutcome, Outcome, Sample } from './outcome.ts';
+export type { Evaluation, LimitOutcome, NoValueReason, Outcome, Sample, UnboundedReason } from './outcome.ts';
+export { type RunJson, toRunJson } from './run-json.ts';
+export { type FieldCode, fieldMessage, LIMIT_STATE_WORDS } from './wording.ts';

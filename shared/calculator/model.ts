@@ -108,7 +108,12 @@ export interface LimitModel {
 export interface ExampleModel {
   readonly title: string;
   readonly source: string;
-  readonly sets: readonly { readonly name: string; readonly part: 'value' | 'tolerance'; readonly to: Entry; readonly span: Span }[];
+  readonly sets: readonly {
+    readonly name: string;
+    readonly part: 'value' | 'tolerance';
+    readonly to: Entry;
+    readonly span: Span;
+  }[];
   readonly expects: readonly Expectation[];
   readonly span: Span;
 }

@@ -1,7 +1,7 @@
-import type { NoValueReason, Sample } from '#formula';
+import type { NoValueReason, Sample, UnboundedReason } from '#formula';
 import type { LimitState } from './model.ts';
 
-export type { NoValueReason, Sample };
+export type { NoValueReason, Sample, UnboundedReason };
 
 /** What a result came to: known, or waiting for inputs that are missing or were refused. */
 export type Outcome =
@@ -11,6 +11,8 @@ export type Outcome =
       readonly middle: Sample;
       /** Present when the result depends on a range. `everywhere` is false when some points have no value. */
       readonly over?: { readonly lowest: Sample; readonly highest: Sample; readonly everywhere: boolean };
+      /** Why the first unbounded of the samples is so, where its formula shows it. */
+      readonly because?: UnboundedReason;
     }
   | { readonly state: 'waiting'; readonly for: readonly string[] };
 
