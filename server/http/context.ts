@@ -1,6 +1,6 @@
 import type { Logger } from 'pino';
 import type * as z from 'zod';
-import type { Answer, CONTRACT, Failure, Role, RouteName } from '#api';
+import type { ACTIONS, Answer, CONTRACT, Failure, ROUTES, Role, RouteName } from '#api';
 import type { Compiled, CompileFacts } from '#recipe';
 import type { Result } from '#text';
 import type { Db } from '../database/open.ts';
@@ -62,8 +62,10 @@ type Parsed<N extends RouteName, Part extends string> = (typeof CONTRACT)[N] ext
 /** Params, query and body of an endpoint, parsed and put together in one object. */
 export type Input<N extends RouteName> = Parsed<N, 'params'> & Parsed<N, 'query'> & Parsed<N, 'body'>;
 
-/** The gate of these is `anyone`. */
-export type OpenRouteName = 'me.read' | 'setup.check' | 'setup.finish' | 'invitations.check' | 'invitations.accept';
+/** The endpoints whose gate is `anyone`. */
+export type OpenRouteName = {
+  [N in RouteName]: (typeof ACTIONS)[(typeof ROUTES)[N]['action']] extends 'anyone' ? N : never;
+}[RouteName];
 export type ContextOf<N extends RouteName> = N extends OpenRouteName ? Context : SignedInContext;
 
 /** An act of the program: rules and SQL, no HTTP. */
