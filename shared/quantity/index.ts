@@ -9,7 +9,7 @@ export { type Dimension, NONE, perDimension, powerOfDimension, sameDimension, ti
 export { coherentUnit, dimensionWords, kindOfDimension } from './dimension-words.ts';
 export { KINDS, type KindRow, PEAK_FACTORS, type QuantityKind, type Reading } from './kinds.ts';
 export { type ReadOptions, type ReadValue, readValue } from './read-value.ts';
-export { fromSi, PREFIXES, readUnit, readUnitAt, toSi, type Unit, type UnitRead } from './units.ts';
+export { fromSi, PREFIXES, readUnit, readUnitAt, toSi, type Unit, type UnitRead, unitsSpeltLike } from './units.ts';
 export { QUANTITY_WORDING, type QuantityCode, type QuantityProblem } from './wording.ts';
 export {
   type WriteOptions,

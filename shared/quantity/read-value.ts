@@ -44,7 +44,9 @@ interface Term extends Slice {
 
 /** More than any value needs; it keeps a text of 100,000 spaces from taking long. */
 const MOST_CHARACTERS = 200;
-const JOINT = /(\s+to\s+|\s*…\s*)|\s*(±|\+\/-|\+-)\s?/;
+const JOINT = /((?:^|\s+)to(?:\s+|$))|\s*(?:±|\+\/-|\+-)\s?/;
+/** A field also takes a range as results show it, to be copied from there. */
+const FIELD_JOINT = /((?:^|\s+)to(?:\s+|$)|\s*…\s*)|\s*(?:±|\+\/-|\+-)\s?/;
 
 /**
  * Reads one value or a range: `10 kΩ`, `4k7`, `-2 V to 2 V`, `±2 V`, `5 V ± 1 V`, `+4 dBu`.
@@ -58,7 +60,7 @@ export function readValue(text: string, options: ReadOptions): Result<ReadValue,
   if (whole.text === '') return refuse(whole, { code: 'value-missing', facts: { example: exampleOf(options) } });
   if (whole.text.length > MOST_CHARACTERS)
     return refuse(whole, { code: 'number-too-long', facts: { most: MOST_CHARACTERS } });
-  const joint = JOINT.exec(whole.text);
+  const joint = (options.unit === 'required' ? JOINT : FIELD_JOINT).exec(whole.text);
   if (joint === null) return single(whole, options);
   if (options.mayBeRange === false)
     return refuse(whole, { code: 'range-refused', facts: { typed: shortened(whole.text) } });

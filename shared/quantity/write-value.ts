@@ -100,24 +100,29 @@ function commonNumbers(low: number, high: number, options: WriteOptions): Common
   const larger = Math.max(Math.abs(x), Math.abs(y));
   const exponent = exponentOf(larger, digitsOf(options));
   if (options.plain === true || exponent > GREATEST_EXPONENT || exponent < LEAST_EXPONENT) return null;
-  const decimals = Math.max(
-    0,
-    isEven ? Math.min(evenDecimals(options), digitsOf(options) - 1 - exponent) : digitsOf(options) - 1 - exponent,
-  );
+  const decimals = digitsOf(options) - 1 - exponent;
+  const isWhole = options.kind === 'count' && Number.isInteger(x) && Number.isInteger(y);
+  // Rounded to tens or more: no decimals to agree on.
+  if (isWhole || decimals < 0) {
+    return { low: numberIn(low, scale, options), high: numberIn(high, scale, options), unit: scale.unit };
+  }
   const smaller = Math.min(Math.abs(x), Math.abs(y));
   if (!isEven && smaller !== 0 && smaller < 10 ** (1 - decimals)) return null;
-  if (digitsOf(options) - 1 < exponent)
-    return { low: numberIn(low, scale, options), high: numberIn(high, scale, options), unit: scale.unit };
-  return { low: signed(x.toFixed(decimals)), high: signed(y.toFixed(decimals)), unit: scale.unit };
+  const shown = isEven ? Math.min(evenDecimals(options), decimals) : decimals;
+  return { low: signed(x.toFixed(shown)), high: signed(y.toFixed(shown)), unit: scale.unit };
 }
 
 /** A level has no number where it is beyond measure, and neither has what is not finite. */
 function wordsFor(value: number, options: WriteOptions): Written | null {
   if (Number.isNaN(value)) return { number: 'no value', unit: '', text: 'no value' };
   if (!Number.isFinite(value)) return { number: 'unbounded', unit: '', text: 'unbounded' };
-  const unit = options.kind === 'level' ? 'dB' : levelUnit(options);
+  // Finite in SI, but beyond a double in the unit: 1e308 rad in degrees.
+  const scale = scaleFor(value, options);
+  if (scale.level === null && !Number.isFinite(inScale(value, scale)))
+    return wordsFor(value * Number.POSITIVE_INFINITY, options);
+  const unit = options.kind === 'level' ? 'dB' : scale.level;
   if (unit === null || (options.plain === true && options.kind === 'level')) return null;
-  const level = unit === 'dB' ? value : levelOf(value, unit);
+  const level = inScale(value, scale);
   if (level > HIGHEST_LEVEL) return written(`above ${HIGHEST_LEVEL}`, unit, options);
   if (level < -HIGHEST_LEVEL) return written(`below −${HIGHEST_LEVEL}`, unit, options);
   return null;
