@@ -11,5 +11,5 @@ export { type Failure, type FieldError, type ProblemBody, problemBody } from './
 export * from './people.ts';
 export { ACTIONS, type Action, mayDo, ROLES, type Role } from './permissions.ts';
 export * from './recipes.ts';
-export { AUTH_ROUTES, RELEASE_HEADER, ROUTES, type RouteName, type RouteRow } from './routes.ts';
+export { AUTH_ROUTES, LINK_PATHS, RELEASE_HEADER, ROUTES, type RouteName, type RouteRow } from './routes.ts';
 export * from './team.ts';

@@ -77,3 +77,6 @@ export type RouteName = keyof typeof ROUTES;
 
 /** Every answer under /api carries the release that gave it, so that a page of an older release can say so. */
 export const RELEASE_HEADER = 'quadrille-release';
+
+/** Pages that a link in a mail, in the terminal or from an admin opens; the token follows in the fragment: `/invitation#token=…`. */
+export const LINK_PATHS = { setUp: '/set-up', invitation: '/invitation', password: '/set-password' } as const;
