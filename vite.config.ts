@@ -1,0 +1,60 @@
+import { readFileSync } from 'node:fs';
+import { fileURLToPath } from 'node:url';
+import tailwindcss from '@tailwindcss/vite';
+import react from '@vitejs/plugin-react';
+import { defineConfig, type Plugin } from 'vite';
+
+const installed = (path: string) => fileURLToPath(new URL(`./node_modules/${path}`, import.meta.url));
+
+/** Writes the release into the page, so that it can tell when the server has moved on. */
+function releaseInPage(): Plugin {
+  const manifest: unknown = JSON.parse(readFileSync(new URL('./package.json', import.meta.url), 'utf8'));
+  if (typeof manifest !== 'object' || manifest === null || !('version' in manifest)) {
+    throw new Error('package.json has no version');
+  }
+  const version = String(manifest.version);
+  return { name: 'release-in-page', transformIndexHtml: (html) => html.replace('__RELEASE__', version) };
+}
+
+export default defineConfig({
+  plugins: [react(), tailwindcss(), releaseInPage()],
+  resolve: {
+    alias: {
+      // Vite would take their "browser" builds, which use document and DOMParser; the compile worker has neither.
+      'decode-named-character-reference': installed('decode-named-character-reference/index.js'),
+      'hast-util-from-html-isomorphic': installed('hast-util-from-html-isomorphic/index.js'),
+    },
+    dedupe: ['react', 'react-dom', 'katex'],
+  },
+  build: {
+    outDir: 'dist/web',
+    emptyOutDir: true,
+    assetsInlineLimit: 0,
+    target: 'es2023',
+    manifest: true,
+    modulePreload: { polyfill: false },
+  },
+  worker: { format: 'es' },
+  // Found late by Vite, being behind lazy imports and the worker; unlisted, the first visit in development reloads the page.
+  optimizeDeps: {
+    include: [
+      'react-hook-form',
+      '@hookform/resolvers/zod',
+      'radix-ui',
+      'idb-keyval',
+      '@codemirror/autocomplete',
+      '@codemirror/commands',
+      '@codemirror/language',
+      '@codemirror/lint',
+      '@codemirror/search',
+      '@codemirror/state',
+      '@codemirror/view',
+      '@mdx-js/mdx',
+      'remark-frontmatter',
+      'remark-gfm',
+      'remark-math',
+      'rehype-katex',
+      'hast-util-to-jsx-runtime',
+    ],
+  },
+});
