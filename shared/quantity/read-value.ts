@@ -232,11 +232,15 @@ function fits(unit: Unit, { kind }: ReadOptions): boolean {
 }
 
 function siOf(term: Term, unit: Unit | LevelUnit, options: ReadOptions): Result<number, QuantityProblem> {
-  if (isLevel(unit)) return checkedEnd(peakOfLevel(Number(term.decimal), unit), term, options);
+  const tooSmall: Refusal = { code: 'number-too-small', facts: { typed: shortened(term.text) } };
+  if (isLevel(unit)) {
+    const peak = peakOfLevel(Number(term.decimal), unit);
+    return peak === 0 ? refuse(term, tooSmall) : checkedEnd(peak, term, options);
+  }
   const isDifference = options.kind === 'temperature-difference';
   const value = toSi(term.decimal, unit, isDifference) * peakFactor(options);
   if (value === 0 && unit.offset === 0 && /[1-9]/.test(term.decimal.split(/e/i)[0] ?? '')) {
-    return refuse(term, { code: 'number-too-small', facts: { typed: shortened(term.text) } });
+    return refuse(term, tooSmall);
   }
   if (options.kind === 'count' && Number.isFinite(value) && !Number.isInteger(value)) {
     return refuse(term, { code: 'not-whole', facts: { typed: shortened(term.text) } });

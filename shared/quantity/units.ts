@@ -197,7 +197,9 @@ export function readUnit(text: string): Unit | null {
 export function toSi(decimal: string, unit: Pick<Unit, 'factor' | 'offset'>, difference = false): number {
   const exponent = powerOfTen(unit.factor);
   const [digits = '', power = '0'] = decimal.toLowerCase().split('e');
-  const product = exponent === null ? Number(decimal) * unit.factor : Number(`${digits}e${Number(power) + exponent}`);
+  // Clamped, as a power of 24 digits would itself be written with an exponent.
+  const shift = Math.min(9999, Math.max(-9999, Number(power))) + (exponent ?? 0);
+  const product = exponent === null ? Number(decimal) * unit.factor : Number(`${digits}e${shift}`);
   return difference ? product : product + unit.offset;
 }
 

@@ -348,6 +348,8 @@ describe('readValue, readings of a sine', () => {
     expect(refusal('4 dBu', 'voltage')).toEqual(['level-needs-rms', 'dBu']);
     expect(refusal('4 dBu', 'voltage', { reading: 'peak' })).toEqual(['level-needs-rms', 'dBu']);
     expect(refusal('4 dBu', 'current', { reading: 'rms' })).toEqual(['unit-wrong', 'dBu']);
+    expect(refusal('-1e6 dBu', 'voltage', { reading: 'rms' })).toEqual(['number-too-small', '-1e6 dBu']);
+    expect(refusal('1e6 dBu', 'voltage', { reading: 'rms' })).toEqual(['number-too-large', '1e6 dBu']);
     expect(refusal('4 dB', 'voltage', { reading: 'rms' })).toEqual(['unit-wrong', 'dB']);
   });
 });
@@ -424,6 +426,8 @@ describe('readValue, refusals', () => {
     ['1e300 TV', 'voltage', 'number-too-large', '1e300 TV'],
     ['1e-999 V', 'voltage', 'number-too-small', '1e-999 V'],
     ['1e-320 fV', 'voltage', 'number-too-small', '1e-320 fV'],
+    ['1e-99999999999999999999999 V', 'voltage', 'number-too-small', '1e-99999999999999999999999 V'],
+    ['1e99999999999999999999999 V', 'voltage', 'number-too-large', '1e99999999999999999999999 V'],
     [`${'1'.repeat(41)} V`, 'voltage', 'number-too-long', `${'1'.repeat(41)} V`],
     ['5', 'voltage', 'unit-missing', '5'],
     ['5', 'angle', 'unit-missing', '5'],
