@@ -133,7 +133,7 @@ const BLANK = /\s/;
 const NUMBER = /(?:\d+(?:\.\d+)?|\.\d+)(?:[eE][+\-−]?\d+)?/y;
 const NUMBER_TAIL = /[\d._]*/y;
 const WORD = /[\p{L}_][\p{L}\p{M}\p{Nd}_]*/uy;
-const UNKNOWN_ENTITY = /&[A-Za-z]+;/y;
+const UNKNOWN_ENTITY = /&#?[A-Za-z0-9]+;/y;
 
 /** Cuts a slice into the parser's tokens; the last is always `end`. Never throws. Cost: linear in the slice. */
 export function scan(source: string, slice: Span): readonly Token[] {
