@@ -79,4 +79,4 @@ export type RouteName = keyof typeof ROUTES;
 export const RELEASE_HEADER = 'quadrille-release';
 
 /** Pages that a link in a mail, in the terminal or from an admin opens; the token follows in the fragment: `/invitation#token=…`. */
-export const LINK_PATHS = { setUp: '/set-up', invitation: '/invitation', password: '/set-password' } as const;
+export const LINK_PATHS = { setUp: '/setup', invitation: '/invitation', password: '/password' } as const;

@@ -31,7 +31,7 @@ for (const [name, from] of Object.entries(licences)) {
 }
 
 const range = (from, to) => Array.from({ length: to - from + 1 }, (_, i) => String.fromCodePoint(from + i)).join('');
-const greek = range(0x391, 0x3a9) + range(0x3b1, 0x3c9) + 'ϑϕϵ';
+const greek = `${range(0x391, 0x3a9) + range(0x3b1, 0x3c9)}ϑϕϵ`;
 const cuts = [
   {
     to: 'sofia-greek',
@@ -41,7 +41,7 @@ const cuts = [
   {
     to: 'stix-letters-latin',
     from: '@fontsource-variable/stix-two-text/files/stix-two-text-latin-wght-italic.woff2',
-    text: range(0x20, 0x7e) + '−×·±',
+    text: `${range(0x20, 0x7e)}−×·±`,
   },
   {
     to: 'stix-letters-greek',
@@ -51,7 +51,7 @@ const cuts = [
   {
     to: 'signs',
     from: '@fontsource-variable/ysabeau-office/files/ysabeau-office-math-wght-normal.woff2',
-    text: range(0x2070, 0x208e) + '←↑→↓↔⇒∂∆∏∑√∝∞∠∥∫≈≠≡≤≥≪≫⊥',
+    text: `${range(0x2070, 0x208e)}←↑→↓↔⇒∂∆∏∑√∝∞∠∥∫≈≠≡≤≥≪≫⊥`,
   },
   {
     // harfbuzz keeps the MATH table, so brackets and roots still stretch
