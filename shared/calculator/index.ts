@@ -8,19 +8,10 @@
  */
 export { type Cure, findCure } from './cure.ts';
 export { type Described, type DescribedLimit, describeLimit, describeOutcome } from './describe.ts';
-export { type Evaluated, evaluate, evaluateInOrder } from './evaluate.ts';
+export { evaluate, evaluateInOrder } from './evaluate.ts';
 export { type ExampleRow, type ExampleRun, runExample } from './examples.ts';
 export { type Explanation, explainResult, type NumberSource } from './explain.ts';
-export {
-  type FieldProblem,
-  type InputField,
-  type InputOptions,
-  type Inputs,
-  type ReadField,
-  readInputs,
-  type Upstream,
-  withLastGood,
-} from './inputs.ts';
+export type { Evaluated, FieldCode, FieldProblem, InputField, Inputs, ReadField, Upstream } from './inputs.ts';
 export { type LinkedCalculator, type LinkedLimit, type LinkedResult, linkCalculator } from './link.ts';
 export type {
   CalculatorModel,
@@ -36,5 +27,6 @@ export type {
   Uncertainty,
 } from './model.ts';
 export type { Evaluation, LimitOutcome, NoValueReason, Outcome, Sample, UnboundedReason } from './outcome.ts';
+export { type InputOptions, readInputs, withLastGood } from './read-inputs.ts';
 export { type RunJson, toRunJson } from './run-json.ts';
-export { type FieldCode, fieldMessage, LIMIT_STATE_WORDS } from './wording.ts';
+export { fieldMessage, LIMIT_STATE_WORDS } from './wording.ts';

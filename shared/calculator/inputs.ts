@@ -1,8 +1,10 @@
 import type { QuantityProblem } from '#quantity';
 import type { Diagnostic } from '#text';
-import type { Evaluated } from './evaluate.ts';
-import type { CalculatorModel } from './model.ts';
-import type { FieldCode } from './wording.ts';
+import type { LinkedCalculator } from './link.ts';
+import type { Evaluation } from './outcome.ts';
+
+/** What a field can be refused for beyond what no quantity can be read from. */
+export type FieldCode = 'outside-limits' | 'not-an-option' | 'too-many-ranges';
 
 /** Why a text in a field is no value. The span counts within that text; `fieldMessage` words it. */
 export type FieldProblem = QuantityProblem | Diagnostic<FieldCode>;
@@ -21,10 +23,8 @@ export interface ReadField extends FieldText {
   readonly high: number;
   /** With prefix; what a bare number takes next. */
   readonly unit: string;
-  /** What was understood, for people: `4.700 kΩ`, `−2.000 to 2.000 V`. */
+  /** What was understood, to the last digit and with its unit: `4.7 kΩ`, `−2 V to 2 V`. Reading it gives the same value, whatever unit was shown before, so it is also the text to keep. */
   readonly understood: string;
-  /** The same to the last digit and with its unit, for keeping: `4.7 kΩ`, `-2 V to 2 V`. */
-  readonly plain: string;
   /** Broken stop limits of the earlier calculator that this value comes from, `title: limit`. */
   readonly notValid: readonly string[];
 }
@@ -43,31 +43,12 @@ export interface Inputs {
   readonly refused: readonly string[];
 }
 
+/** One calculator with the inputs it was evaluated for. */
+export interface Evaluated {
+  readonly linked: LinkedCalculator;
+  readonly inputs: Inputs;
+  readonly evaluation: Evaluation;
+}
+
 /** Calculators further up the page, by id. */
 export type Upstream = Readonly<Record<string, Evaluated>>;
-
-export interface InputOptions {
-  /** Whether a comma is a decimal sign for this person. */
-  readonly decimalComma?: boolean;
-  readonly upstream?: Upstream;
-  /** The inputs as last shown, e.g. before the field got the focus: the unit of a bare number and the last good numbers. */
-  readonly lastShown?: Inputs;
-}
-
-/**
- * Reads every field of a calculator. A field without text (absent or null) takes the recipe's value or, with `from`, the
- * earlier calculator's; names that the calculator lacks are ignored.
- * When it cannot: the field is refused with a problem, and what depends on it waits. Never throws on a text.
- */
-export function readInputs(
-  _model: CalculatorModel,
-  _texts: Readonly<Record<string, string | null>>,
-  _options: InputOptions = {},
-): Inputs {
-  throw new Error('calculator/inputs is being written');
-}
-
-/** Puts the last good numbers in place of refused fields, so that the last good results can be shown, marked as such. */
-export function withLastGood(_inputs: Inputs): Inputs {
-  throw new Error('calculator/inputs is being written');
-}

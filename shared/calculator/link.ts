@@ -2,7 +2,7 @@ import { type CheckedExpr, type LinkedFormula, linkScalar, namesRead } from '#fo
 import type { CalculatorModel, LimitModel, ResultModel } from './model.ts';
 
 /** Writes one result into its place in the frame. */
-interface Step {
+export interface Step {
   readonly slot: number;
   readonly run: LinkedFormula;
 }

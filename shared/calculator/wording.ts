@@ -1,10 +1,7 @@
 import { QUANTITY_WORDING, type QuantityCode } from '#quantity';
 import type { Facts, Wording } from '#text';
-import type { FieldProblem } from './inputs.ts';
+import type { FieldCode, FieldProblem } from './inputs.ts';
 import type { LimitOutcome } from './outcome.ts';
-
-/** What a field can be refused for beyond what no quantity can be read from. */
-export type FieldCode = 'outside-limits' | 'not-an-option' | 'too-many-ranges';
 
 const FIELD_WORDING = {
   'outside-limits': {
