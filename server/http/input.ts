@@ -24,9 +24,18 @@ export function parseInput(name: RouteName, parts: Parts): Result<Readonly<Recor
     if (parsed?.success === false) fields.push(...parsed.error.issues.flatMap(fieldErrors));
     else values.push(parsed?.data);
   }
-  if (fields.length === 0) return ok(Object.assign({}, ...values));
+  return fields.length === 0 ? ok(Object.assign({}, ...values)) : fail(needOthers(fields));
+}
+
+/** Parses a body that stands outside of the contract, in the same words. */
+export function parseBody<S extends z.ZodType>(schema: S, body: unknown): Result<z.output<S>, Failure> {
+  const parsed = schema.safeParse(body, { error: fieldWords });
+  return parsed.success ? ok(parsed.data) : fail(needOthers(parsed.error.issues.flatMap(fieldErrors)));
+}
+
+function needOthers(fields: readonly FieldError[]): Failure {
   const count = fields.length === 1 ? 'One field needs' : `${fields.length} fields need`;
-  return fail({ kind: 'invalid', detail: `${count} another value.`, fields });
+  return { kind: 'invalid', detail: `${count} another value.`, fields };
 }
 
 function fieldErrors(issue: z.core.$ZodIssue): FieldError[] {
