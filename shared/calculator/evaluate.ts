@@ -4,7 +4,16 @@ import { isBroken, type Judged, limitOutcome, limitPoint, marginOf, waitingLimit
 import type { Footing, LinkedCalculator, LinkedLimit, LinkedResult } from './link.ts';
 import type { Evaluation, LimitOutcome, Outcome } from './outcome.ts';
 import { readInputs } from './read-inputs.ts';
-import { type Axis, type Extremes, moveTo, positionOf, runSteps, searchRanges, type Target } from './search.ts';
+import {
+  type Axis,
+  axisFor,
+  type Extremes,
+  moveTo,
+  positionOf,
+  runSteps,
+  searchRanges,
+  type Target,
+} from './search.ts';
 
 /** Where one evaluation works: the frame at the middle of every range, and what the fields leave open. */
 interface Bench {
@@ -77,7 +86,7 @@ function benchFor(linked: LinkedCalculator, inputs: Inputs): Bench {
       continue;
     }
     const { low, high } = field;
-    const axis: Axis = { slot, low, high, byRatio: given.quantity === 'frequency' && low > 0 };
+    const axis = axisFor(given.quantity, slot, low, high);
     if (low < high) axes.set(given.name, axis);
     frame[slot] = positionOf(axis, 0.5);
   }
@@ -158,10 +167,11 @@ function valuesIn(linked: LinkedCalculator, frame: Float64Array): Values {
 /** Follows the reason through the results between, down to the terms that cancel: not "A_cm is zero". */
 function reasonFor(linked: LinkedCalculator, formula: CheckedExpr, values: Values): UnboundedReason | undefined {
   const reason = unboundedReason(formula, values);
-  const name = reason?.kind === 'name' ? reason.name : reason?.kind === 'zero' ? reason.term : '';
+  if (reason === null) return undefined;
+  const name = reason.kind === 'name' ? reason.name : reason.kind === 'zero' ? reason.term : '';
   const below = linked.results.get(name)?.model.formula;
-  if (!below) return reason ?? undefined;
-  return reasonFor(linked, reason?.kind === 'zero' ? reciprocal(below) : below, values) ?? reason ?? undefined;
+  if (!below) return reason;
+  return reasonFor(linked, reason.kind === 'zero' ? reciprocal(below) : below, values) ?? reason;
 }
 
 /** A formula that is unbounded where the other is zero. */

@@ -1,4 +1,5 @@
 import type { LinkedFormula } from '#formula';
+import type { QuantityKind } from '#quantity';
 import type { Step } from './link.ts';
 
 /** One range to search along; `byRatio` for a frequency, which is even in ratio. */
@@ -50,6 +51,11 @@ const POLE_GROWTH = 1e4;
 
 /** Rounds of the search along each axis in turn from an extreme that is no corner. */
 const ROUNDS = 4;
+
+/** Makes the axis of a given's range; a frequency is even in ratio where it can be. */
+export function axisFor(quantity: QuantityKind, slot: number, low: number, high: number): Axis {
+  return { slot, low, high, byRatio: quantity === 'frequency' && low > 0 };
+}
 
 /** Puts a frame's axis at a share of its span; the ends are exact. */
 export function positionOf({ low, high, byRatio }: Axis, share: number): number {
