@@ -1,23 +1,12 @@
-import { readFileSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import tailwindcss from '@tailwindcss/vite';
 import react from '@vitejs/plugin-react';
-import { defineConfig, type Plugin } from 'vite';
+import { defineConfig } from 'vite';
 
 const installed = (path: string) => fileURLToPath(new URL(`./node_modules/${path}`, import.meta.url));
 
-/** Writes the release into the page, so that it can tell when the server has moved on. */
-function releaseInPage(): Plugin {
-  const manifest: unknown = JSON.parse(readFileSync(new URL('./package.json', import.meta.url), 'utf8'));
-  if (typeof manifest !== 'object' || manifest === null || !('version' in manifest)) {
-    throw new Error('package.json has no version');
-  }
-  const version = String(manifest.version);
-  return { name: 'release-in-page', transformIndexHtml: (html) => html.replace('__RELEASE__', version) };
-}
-
 export default defineConfig({
-  plugins: [react(), tailwindcss(), releaseInPage()],
+  plugins: [react(), tailwindcss()],
   resolve: {
     alias: {
       // Vite would take their "browser" builds, which use document and DOMParser; the compile worker has neither.

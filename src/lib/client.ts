@@ -44,7 +44,13 @@ export async function request<N extends RouteName>(
   return ok(sent.value as Answer<N>);
 }
 
-type AuthPath = 'sign-in/email' | 'sign-out' | 'request-password-reset' | 'reset-password' | 'change-password';
+type AuthPath =
+  | 'sign-in/email'
+  | 'sign-out'
+  | 'request-password-reset'
+  | 'reset-password'
+  | 'change-password'
+  | 'revoke-other-sessions';
 
 /** Sends to one of the sign-in library's own paths. */
 export function authRequest(

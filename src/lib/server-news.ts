@@ -29,9 +29,9 @@ export function useServerNews(): ServerNews {
   }, serverNews);
 }
 
-/** Compares an answer's release with the one written into the page; a page served without one compares nothing. */
+/** Compares an answer's release with the one the server wrote into the page; a page without one compares nothing. */
 export function hearRelease(release: string | null): void {
-  const own = document.querySelector('meta[name="quadrille-release"]')?.getAttribute('content') ?? '';
-  if (release === null || own === '' || own.startsWith('__')) return;
+  const own = document.querySelector('meta[name="release"]')?.getAttribute('content') ?? '';
+  if (release === null || own === '') return;
   if (release !== own) tellNews({ isUpdated: true });
 }

@@ -1,0 +1,14 @@
+import { setNonce } from 'get-nonce';
+import { createRoot } from 'react-dom/client';
+import { App } from './app/app.tsx';
+import { openPreferences } from './lib/preferences.ts';
+import './ui/style.css';
+
+// Dialogs add a style element of their own; the policy takes it by this nonce.
+const nonce = document.querySelector('meta[name="csp-nonce"]')?.getAttribute('content');
+if (nonce) setNonce(nonce);
+openPreferences(null);
+
+const root = document.getElementById('root');
+if (root === null) throw new Error('index.html has no element with the id "root"');
+createRoot(root).render(<App />);
