@@ -54,7 +54,7 @@ export function notValidWords(broken: readonly string[]): string {
 
 function remarkFor(described: Described, broken: readonly string[]): string | null {
   const parts = broken.length > 0 ? [notValidWords(broken)] : [];
-  if (described.words !== described.text) parts.push(described.words);
+  if (described.words !== described.text.replace(' … ', ' to ')) parts.push(described.words);
   return parts.length === 0 ? null : parts.join('; ');
 }
 
