@@ -1,7 +1,7 @@
-import { createHash } from 'node:crypto';
 import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { sql } from 'drizzle-orm';
+import { StartError } from '../env.ts';
 import type { Db, Opened } from './open.ts';
 import { rows } from './rows.ts';
 import { team } from './schema.ts';
@@ -13,14 +13,6 @@ interface Journal {
 /** Reads which migrations a folder holds, in order. */
 export function readJournal(folder: string): Journal {
   return JSON.parse(readFileSync(join(folder, 'meta', '_journal.json'), 'utf8'));
-}
-
-/** Names the state of the schema: what the last migration of the folder is and a hash of its text. Stands in every backup. */
-export function schemaVersion(folder: string): string {
-  const last = readJournal(folder).entries.at(-1);
-  if (!last) throw new Error('the migrations folder holds no migration');
-  const text = readFileSync(join(folder, `${last.tag}.sql`));
-  return `${last.tag}-${createHash('sha256').update(text).digest('hex').slice(0, 12)}`;
 }
 
 export interface MigrationPlan {
@@ -39,8 +31,8 @@ export async function planMigration(db: Db, folder: string): Promise<MigrationPl
   if (applied === null) return { state: 'new', pending: entries.map((entry) => entry.tag) };
   const newest = entries.at(-1)?.when ?? 0;
   if (applied > newest) {
-    throw new Error(
-      'The data was written by a newer release. Start that release, or restore a backup into an empty place.',
+    throw new StartError(
+      'The data were written by a newer release. Start that release, or restore a backup into an empty place.',
     );
   }
   const pending = entries.filter((entry) => entry.when > applied).map((entry) => entry.tag);
@@ -58,6 +50,14 @@ async function lastApplied(db: Db): Promise<number | null> {
     sql`select max(created_at)::text as "when" from drizzle.__drizzle_migrations`,
   );
   return last?.when == null ? null : Number(last.when);
+}
+
+/** Names the last migration that a database has seen. Throws when it has seen none of the folder's. */
+export async function appliedMigration(db: Db, folder: string): Promise<string> {
+  const when = await lastApplied(db);
+  const entry = readJournal(folder).entries.find((one) => one.when === when);
+  if (!entry) throw new StartError('The data were not written by this release or an earlier one.');
+  return entry.tag;
 }
 
 /** Makes the one row of team settings that every part of the program reads. */

@@ -1,0 +1,32 @@
+// Builds the pages (Vite) and the server (esbuild) into dist/.
+import { mkdirSync, rmSync, utimesSync, writeFileSync } from 'node:fs';
+import { dirname, join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+import { build as bundle } from 'esbuild';
+import { build as buildPages } from 'vite';
+
+const ROOT = join(dirname(fileURLToPath(import.meta.url)), '..');
+const begun = new Date();
+process.env.NODE_ENV = 'production';
+
+rmSync(join(ROOT, 'dist', 'server'), { recursive: true, force: true });
+await Promise.all([
+  buildPages({ root: ROOT, logLevel: 'warn' }),
+  bundle({
+    absWorkingDir: ROOT,
+    entryPoints: ['server/main.ts', 'server/compile-thread.ts'],
+    outdir: 'dist/server',
+    bundle: true,
+    platform: 'node',
+    target: 'node20',
+    format: 'esm',
+    packages: 'external',
+    sourcemap: true,
+    logLevel: 'warning',
+  }),
+]);
+
+// The stamp carries the moment the build began: what was changed while it ran is newer, and is built again.
+mkdirSync(join(ROOT, 'dist'), { recursive: true });
+writeFileSync(join(ROOT, 'dist', 'built'), `${begun.toISOString()}\n`);
+utimesSync(join(ROOT, 'dist', 'built'), begun, begun);
