@@ -2,7 +2,6 @@ import { assertNever } from '#text';
 import { FUNCTIONS } from './functions.ts';
 import {
   addBlock,
-  copyBlock,
   divideBlock,
   type Kernel,
   multiplyBlock,
@@ -24,8 +23,8 @@ export interface BlockProgram {
   run(inputs: readonly Float64Array[], outputs: readonly Float64Array[], count: number): void;
 }
 
-/** Numbers a block: a dozen registers of this length stay in the first-level cache. Common practice, no source. */
-const BLOCK = 256;
+/** Numbers a block: some registers of this length fit into the nearest cache, and what a block costs beside its numbers stays small (measured: 256 to 2,048 are alike). */
+const BLOCK = 512;
 
 /** One thing that is computed, whatever its operands. `key` tells it from all others. */
 interface Operation {
@@ -58,11 +57,12 @@ const OR: Operation = { key: 'or', kernel: twoBlock(disjunction), real: disjunct
 const IF: Operation = { key: 'if', kernel: threeBlock(choice), real: choice };
 
 function single(key: string, real: (x: number) => number): Operation {
-  return { key, kernel: oneBlock(real), real };
+  return { key, kernel: oneBlock(real), real: (a) => real(a) };
 }
 
 function pair(key: string, real: (a: number, b: number) => number): Operation {
-  return { key, kernel: twoBlock(real), real };
+  // Exactly two: Math.min would look at a third.
+  return { key, kernel: twoBlock(real), real: (a, b) => real(a, b) };
 }
 
 /** Numbers the values of formulas, folding constants and finding what is there already. */
@@ -170,102 +170,85 @@ function numberOfCall(name: string, args: readonly number[], values: Values): nu
   }
 }
 
-/** Where a value stands while the program runs: an array by its number, read from the block's start if it is a whole column. */
-interface Place {
-  readonly array: number;
-  readonly isColumn: boolean;
-}
-
+/** Arrays by number while the program runs: a program's registers first, then the columns it reads, then those it fills. */
 interface Step {
   readonly kernel: Kernel;
-  readonly out: Place;
-  readonly operands: readonly [Place, Place, Place];
+  readonly out: number;
+  readonly operands: readonly [number, number, number];
 }
 
-/** Gives every value a place and every computed one a step. Registers are used again after the last use of their value. */
+/** A register is longer than the last block of a column. */
+const COPY: Kernel = (count, out, a) => out.set(a.subarray(0, count));
+
+/** Gives every value an array and every computed one a step. Registers are used again after the last use of their value. */
 function assemble(values: readonly Value[], results: readonly number[]): BlockProgram {
-  const registers: Float64Array[] = [];
-  const inputs = values.flatMap((value) => (value.kind === 'column' ? [value.slot] : []));
-  const free: number[] = [];
   const lastUse = new Map<number, number>();
   for (const [at, value] of values.entries()) {
     if (value.kind === 'computed') for (const operand of value.operands) lastUse.set(operand, at);
   }
-  const places: Place[] = [];
+  const registers: Float64Array[] = [];
+  const slots: number[] = [];
+  const free: number[] = [];
+  // How many registers there are is known only at the end: until then columns have negative numbers.
+  const places: number[] = [];
+  const filled = (result: number) => -1 - (slotCount + result);
+  const slotCount = values.filter((value) => value.kind === 'column').length;
   const steps: Step[] = [];
-  // Columns are numbered behind the registers, whose count is known only at the end: they get negative numbers until then.
-  const columnOf = (index: number): Place => ({ array: -1 - index, isColumn: true });
-  let inputCount = 0;
   for (const [at, value] of values.entries()) {
-    if (value.kind === 'constant') {
-      places.push({ array: registers.push(new Float64Array(BLOCK).fill(value.value)) - 1, isColumn: false });
-    } else if (value.kind === 'column') {
-      places.push(columnOf(inputCount++));
-    } else {
-      const operands = value.operands.map((operand) => places[operand] ?? columnOf(0));
-      for (const operand of new Set(value.operands)) {
-        const place = places[operand];
-        const isRegister = values[operand]?.kind === 'computed' && place && !place.isColumn;
-        if (isRegister && lastUse.get(operand) === at) free.push(place.array);
-      }
-      const result = results.indexOf(at);
-      const register = result < 0 ? (free.pop() ?? registers.push(new Float64Array(BLOCK)) - 1) : 0;
-      const out = result < 0 ? { array: register, isColumn: false } : columnOf(inputs.length + result);
-      places.push(out);
-      steps.push({ kernel: value.operation.kernel, out, operands: threeOf(operands) });
+    if (value.kind === 'column') {
+      places.push(-slots.push(value.slot));
+      continue;
     }
+    if (value.kind === 'constant') {
+      places.push(registers.push(new Float64Array(BLOCK).fill(value.value)) - 1);
+      continue;
+    }
+    const operands = threeOf(value.operands.map((operand) => places[operand]));
+    for (const operand of new Set(value.operands)) {
+      const place = places[operand] ?? -1;
+      const ends = values[operand]?.kind === 'computed' && lastUse.get(operand) === at;
+      if (ends && place >= 0) free.push(place);
+    }
+    const result = results.indexOf(at);
+    const out = result >= 0 ? filled(result) : (free.pop() ?? registers.push(new Float64Array(BLOCK)) - 1);
+    places.push(out);
+    steps.push({ kernel: value.operation.kernel, out, operands });
   }
   for (const [index, result] of results.entries()) {
-    const out = columnOf(inputs.length + index);
-    const from = places[result] ?? out;
-    if (from.array !== out.array) steps.push({ kernel: copyBlock, out, operands: threeOf([from]) });
+    const from = places[result];
+    if (from !== filled(index)) steps.push({ kernel: COPY, out: filled(index), operands: threeOf([from]) });
   }
-  const settle = ({ array, isColumn }: Place): Place => ({
-    array: array < 0 ? registers.length - 1 - array : array,
-    isColumn,
+  const settle = (place: number) => (place < 0 ? registers.length - 1 - place : place);
+  const settled = steps.map(({ kernel, out, operands: [a, b, c] }): Step => {
+    return { kernel, out: settle(out), operands: [settle(a), settle(b), settle(c)] };
   });
-  const settled = steps.map(({ kernel, out, operands: [a, b, c] }) => ({
-    kernel,
-    out: settle(out),
-    operands: [settle(a), settle(b), settle(c)] as const,
-  }));
-  return programOf(settled, registers, inputs);
+  return programOf(settled, registers, slots);
 }
 
-function threeOf(operands: readonly Place[]): readonly [Place, Place, Place] {
+function threeOf(operands: readonly (number | undefined)[]): readonly [number, number, number] {
   const [a, b = a, c = a] = operands;
-  if (!a || !b || !c) throw new Error('an operation without operands is a constant');
+  if (a === undefined || b === undefined || c === undefined) throw new Error('a step has no operands');
   return [a, b, c];
 }
 
 function programOf(steps: readonly Step[], registers: readonly Float64Array[], slots: readonly number[]): BlockProgram {
   return {
     run: function runProgram(inputs, outputs, count) {
-      const columns = slots.map((slot) => columnAt(inputs, slot));
-      const arrays = [...registers, ...columns, ...outputs];
+      const columns = [...slots.map((slot) => arrayAt(inputs, slot)), ...outputs];
       for (let start = 0; start < count; start += BLOCK) {
-        const length = Math.min(BLOCK, count - start);
+        const end = Math.min(start + BLOCK, count);
+        const arrays = [...registers, ...columns.map((column) => column.subarray(start, end))];
         for (const { kernel, out, operands } of steps) {
           const [a, b, c] = operands;
-          kernel(
-            length,
-            columnAt(arrays, out.array),
-            out.isColumn ? start : 0,
-            columnAt(arrays, a.array),
-            a.isColumn ? start : 0,
-            columnAt(arrays, b.array),
-            b.isColumn ? start : 0,
-            columnAt(arrays, c.array),
-            c.isColumn ? start : 0,
-          );
+          kernel(end - start, arrayAt(arrays, out), arrayAt(arrays, a), arrayAt(arrays, b), arrayAt(arrays, c));
         }
       }
     },
   };
 }
 
-function columnAt(columns: readonly Float64Array[], index: number): Float64Array {
-  const column = columns[index];
-  if (column === undefined) throw new Error(`the program has no column ${index}`);
-  return column;
+function arrayAt(arrays: readonly Float64Array[], index: number): Float64Array {
+  const array = arrays[index];
+  if (array === undefined) throw new Error(`the program has no array ${index}`);
+  return array;
 }

@@ -1,7 +1,7 @@
+import { NONE } from '#quantity';
 import { assertNever } from '#text';
 import { FUNCTIONS } from './functions.ts';
 import { linkScalar } from './link.ts';
-import { namesRead } from './order.ts';
 import type { NoValueReason, Sample, UnboundedReason } from './outcome.ts';
 import { formulaText } from './show.ts';
 import type { CheckedExpr } from './syntax.ts';
@@ -19,7 +19,7 @@ type Evaluate = (part: CheckedExpr) => number;
 /**
  * Turns the number that a linked formula gave for these values into a Sample; walks the tree only if it is not finite.
  * Unbounded: the span is that of the operation which made the infinity, e.g. the division; no value: that of the
- * operation which has none. Cost of the walk: the square of the size of the formula.
+ * operation which has none. Cost of the walk: the size of the formula.
  */
 export function sampleAt(checked: CheckedExpr, raw: number, values: Values): Sample {
   if (Number.isFinite(raw)) return { kind: 'finite', si: raw };
@@ -47,11 +47,61 @@ export function unboundedReason(checked: CheckedExpr, values: Values): Unbounded
   return { kind: 'too-large', span: cause.span, term: formulaText(cause) };
 }
 
-/** Gives the value of any part of a formula. */
+/**
+ * Gives the value of any part of a formula, each computed once: a part is linked alone, with its operands' values put in.
+ * Operands that read no name stay constants, as the closure takes powers with a constant exponent in another way.
+ */
 function evaluator(checked: CheckedExpr, values: Values): Evaluate {
-  const names = namesRead(checked);
-  const frame = Float64Array.from(names, (name) => values.valueOf(name));
-  return (part) => linkScalar(part, (name) => names.indexOf(name))(frame);
+  const known = new Map<CheckedExpr, { readonly value: number; readonly isConstant: boolean }>();
+  const visit = (part: CheckedExpr): { readonly value: number; readonly isConstant: boolean } => {
+    const before = known.get(part);
+    if (before) return before;
+    const operands = partsOf(part).map(visit);
+    const isConstant = part.kind !== 'name' && operands.every((operand) => operand.isConstant);
+    const alone = withParts(
+      part,
+      operands.map(({ value, isConstant: fixed }, i): CheckedExpr => {
+        return fixed
+          ? { kind: 'number', span: part.span, type: NONE, value }
+          : { kind: 'name', span: part.span, type: NONE, name: String(i) };
+      }),
+    );
+    const frame = Float64Array.from(operands, (operand) => operand.value);
+    const value = part.kind === 'name' ? values.valueOf(part.name) : linkScalar(alone, Number)(frame);
+    known.set(part, { value, isConstant });
+    return { value, isConstant };
+  };
+  visit(checked);
+  return (part) => visit(part).value;
+}
+
+function partsOf(expr: CheckedExpr): readonly CheckedExpr[] {
+  switch (expr.kind) {
+    case 'number':
+    case 'quantity':
+    case 'constant':
+    case 'name':
+      return [];
+    case 'negate':
+    case 'not':
+      return [expr.of];
+    case 'arithmetic':
+    case 'compare':
+    case 'logic':
+      return [expr.left, expr.right];
+    case 'call':
+      return expr.args;
+    default:
+      return assertNever(expr);
+  }
+}
+
+function withParts(expr: CheckedExpr, parts: readonly CheckedExpr[]): CheckedExpr {
+  if (expr.kind === 'call') return { ...expr, args: parts };
+  const [first, second] = parts;
+  if (first && (expr.kind === 'negate' || expr.kind === 'not')) return { ...expr, of: first };
+  const isBinary = expr.kind === 'arithmetic' || expr.kind === 'compare' || expr.kind === 'logic';
+  return first && second && isBinary ? { ...expr, left: first, right: second } : expr;
 }
 
 /** The innermost part that gave the NaN or the infinity of the whole: its own operands do not. */
@@ -66,29 +116,11 @@ function causeOf(whole: CheckedExpr, evaluate: Evaluate): CheckedExpr {
 
 /** The parts that bear on the value: of an `if` the test, or the branch that it chose. */
 function operandsOf(expr: CheckedExpr, evaluate: Evaluate): readonly CheckedExpr[] {
-  switch (expr.kind) {
-    case 'number':
-    case 'quantity':
-    case 'constant':
-    case 'name':
-      return [];
-    case 'negate':
-    case 'not':
-      return [expr.of];
-    case 'arithmetic':
-    case 'compare':
-    case 'logic':
-      return [expr.left, expr.right];
-    case 'call': {
-      if (expr.name !== 'if') return expr.args;
-      const [test, yes, no] = expr.args;
-      const answer = test && evaluate(test);
-      const chosen = answer === 1 ? yes : answer === 0 ? no : test;
-      return chosen ? [chosen] : [];
-    }
-    default:
-      return assertNever(expr);
-  }
+  if (expr.kind !== 'call' || expr.name !== 'if') return partsOf(expr);
+  const [test, yes, no] = expr.args;
+  const answer = test && evaluate(test);
+  const chosen = answer === 1 ? yes : answer === 0 ? no : test;
+  return chosen ? [chosen] : [];
 }
 
 /** Why a part has no value though its operands have one. */
