@@ -1,5 +1,5 @@
 import { and, eq, or } from 'drizzle-orm';
-import type { PersonRef, ReviewPage } from '#api';
+import { type PersonRef, type ReviewPage, SIGN_OFF_TICKS } from '#api';
 import type { RecipeDocument } from '#recipe';
 import type { Db } from '../database/open.ts';
 import { design, recipeVersion, user } from '../database/schema.ts';
@@ -86,8 +86,8 @@ async function loadDocuments(
   return new Map(found.map((row) => [row.version, row.document]));
 }
 
-export const TICK_DERIVATION = 'I followed the derivation of each formula';
-export const TICK_HAZARDS = 'I looked at the hazards and their cautions';
+export const TICK_DERIVATION = SIGN_OFF_TICKS.derivation;
+export const TICK_HAZARDS = SIGN_OFF_TICKS.hazards;
 /** With more broken designs than this, one tick stands for all: a list that nobody reads proves nothing. Common practice, no source. */
 const SINGLE_TICKS = 10;
 /** Longest tick of the contract. */

@@ -13,3 +13,4 @@ export { ACTIONS, type Action, mayDo, ROLES, type Role } from './permissions.ts'
 export * from './recipes.ts';
 export { AUTH_ROUTES, LINK_PATHS, RELEASE_HEADER, ROUTES, type RouteName, type RouteRow } from './routes.ts';
 export * from './team.ts';
+export { SIGN_OFF_TICKS } from './ticks.ts';
