@@ -75,7 +75,13 @@ function said(value: string | number | boolean | readonly string[]): string {
 
 /** Names of the IANA data base only: an offset such as +02:00 would go wrong at the next change of clocks. */
 function isTimeZone(name: string): boolean {
-  return name === 'UTC' || Intl.supportedValuesOf('timeZone').includes(name);
+  if (!/^[A-Za-z]/.test(name)) return false;
+  try {
+    // Takes every name and alias; `Intl.supportedValuesOf` lists one of them each, and browsers differ in which they report.
+    return new Intl.DateTimeFormat('en', { timeZone: name }).resolvedOptions().timeZone !== '';
+  } catch {
+    return false;
+  }
 }
 
 async function shown({ db, settings }: Pick<Context, 'db' | 'settings'>): Promise<TeamSettings> {
