@@ -1,11 +1,11 @@
-import { fromSi, readUnit, toSi } from '#quantity';
+import { fromSi, PEAK_FACTORS, readUnit, toSi } from '#quantity';
 import { evaluate, evaluateLimit } from './evaluate.ts';
 import type { Inputs, ReadField } from './inputs.ts';
 import { isHeld } from './limit-state.ts';
 import type { LinkedCalculator, LinkedLimit } from './link.ts';
 import type { Given } from './model.ts';
 import type { LimitOutcome } from './outcome.ts';
-import { fieldText, readInputs, withValue } from './read-inputs.ts';
+import { fieldText, readInputs } from './read-inputs.ts';
 
 /** The nearest change of one input that brings a limit within its bounds. `to` and `was` are texts for the field. */
 export interface Cure {
@@ -24,7 +24,11 @@ const FACTORS = [1.001, 1.003, 1.01, 1.02, 1.05, 1.1, 1.2, 1.35, 1.5, 2, 3, 5, 1
 const SHARES = [0.003, 0.01, 0.03, 0.06, 0.1, 0.15, 0.2, 0.3, 0.4, 0.5, 0.6, 0.7, 0.8, 0.9, 1] as const;
 /** A zero has no ratio to anything: such changes come after all that have. */
 const FROM_ZERO = 10;
-const BISECTIONS = 14;
+const BISECTIONS = 12;
+/** Changes that would break another limit are passed over so often. */
+const ATTEMPTS = 3;
+/** Thirds taken off where a cure is looked for between two stops: a window of 0.5 % of the step is found. */
+const NARROWINGS = 12;
 /** A rounder number may go this share of the change further. */
 const OVERSHOOT = 0.25;
 const MOST_DIGITS = 6;
@@ -40,13 +44,18 @@ interface Path {
 
 interface Candidate {
   readonly path: Path;
-  /** Cured at `good`, not at `bad`. */
-  readonly bad: number;
+  /** Where the limit is cured, to a small part of the step before. */
   readonly good: number;
   readonly effort: number;
 }
 
 type IsGood = (outcome: LimitOutcome) => boolean;
+
+/** Whether a change cures, and the margin it leaves, which tells how near it comes if not. */
+interface Trial {
+  readonly isGood: boolean;
+  readonly margin: number;
+}
 
 /**
  * Finds the smallest change of one given, in proportion, that brings a broken or close limit within its bounds; of a
@@ -69,40 +78,79 @@ export function findCure(linked: LinkedCalculator, inputs: Inputs, name: string)
 }
 
 function nearestCure(linked: LinkedCalculator, inputs: Inputs, limit: LinkedLimit, isGood: IsGood): Cure | null {
-  const candidates: Candidate[] = [];
-  for (const path of pathsOf(linked, inputs, limit)) {
-    const test = (distance: number) => {
-      const { low, high } = path.at(distance);
-      return isGood(evaluateLimit(linked, withValue(inputs, path.given, low, high), limit));
-    };
-    const found = firstGood(path, test);
-    if (found) candidates.push(found);
-  }
-  candidates.sort((a, b) => a.effort - b.effort);
+  const trial = (path: Path, distance: number): Trial => {
+    const change = { name: path.given.name, ...path.at(distance) };
+    const outcome = evaluateLimit(linked, inputs, limit, change);
+    return { isGood: isGood(outcome), margin: outcome.margin ?? Number.NEGATIVE_INFINITY };
+  };
+  let paths = pathsOf(linked, inputs, limit);
   let second: Cure | null = null;
-  for (const candidate of candidates) {
-    const cure = tidyCure(linked, inputs, limit, candidate, isGood);
+  for (let attempt = 0; attempt < ATTEMPTS; attempt++) {
+    const nearest = nearestOf(paths, trial);
+    if (!nearest) break;
+    const cure = tidyCure(linked, inputs, limit, nearest, isGood);
     if (cure?.breaks.length === 0) return cure;
     second ??= cure;
+    const { path } = nearest;
+    paths = paths.filter((other) => other !== path);
   }
   return second;
 }
 
-function firstGood(path: Path, test: (distance: number) => boolean): Candidate | null {
-  let bad = 0;
+function nearestOf(paths: readonly Path[], trial: (path: Path, distance: number) => Trial): Candidate | null {
+  let nearest: Candidate | null = null;
+  for (const path of paths) {
+    const most: number = nearest?.effort ?? Number.POSITIVE_INFINITY;
+    nearest = firstGood(path, (distance) => trial(path, distance), most) ?? nearest;
+  }
+  return nearest;
+}
+
+/** Looks along a path for a cure that needs less than `most`. */
+function firstGood(path: Path, test: (distance: number) => Trial, most: number): Candidate | null {
+  const margins = [test(0).margin];
+  let before = 0;
   for (const stop of path.stops) {
-    if (!test(stop)) {
-      bad = stop;
-      continue;
+    // The stop before was no cure, so one that needs less may still lie between.
+    if (path.effort(before) >= most) break;
+    const trial = test(stop);
+    if (trial.isGood) {
+      const found = nearestGood(path, test, before, stop);
+      return found.effort < most ? found : null;
     }
-    let good = stop;
-    // A list has nothing between its entries.
-    for (let i = 0; i < BISECTIONS && !path.given.options; i++) {
-      const middle = (bad + good) / 2;
-      if (test(middle)) good = middle;
-      else bad = middle;
-    }
-    return { path, bad, good, effort: path.effort(good) };
+    margins.push(trial.margin);
+    before = stop;
+  }
+  const found = betweenStops(path, test, margins);
+  return found && found.effort < most ? found : null;
+}
+
+/** Bisects from a stop that does not cure to one that does. A list has nothing between its entries. */
+function nearestGood(path: Path, test: (distance: number) => Trial, bad: number, good: number): Candidate {
+  let [from, to] = [bad, good];
+  for (let i = 0; i < BISECTIONS && !path.given.options; i++) {
+    const middle = (from + to) / 2;
+    if (test(middle).isGood) to = middle;
+    else from = middle;
+  }
+  return { path, good: to, effort: path.effort(to) };
+}
+
+/**
+ * A cure may be narrower than the step between two stops, as a match of resistors is: goes where the margin is largest,
+ * if it is so inside. `margins` belong to the distance 0 and the stops after it.
+ */
+function betweenStops(path: Path, test: (distance: number) => Trial, margins: readonly number[]): Candidate | null {
+  const best = margins.indexOf(Math.max(...margins));
+  if (path.given.options || best <= 0 || best === margins.length - 1) return null;
+  const start = path.stops[best - 2] ?? 0;
+  let [from, to] = [start, path.stops[best] ?? start];
+  for (let i = 0; i < NARROWINGS; i++) {
+    const [a, b] = [from + (to - from) / 3, to - (to - from) / 3];
+    const [atA, atB] = [test(a), test(b)];
+    if (atA.isGood || atB.isGood) return nearestGood(path, test, start, atA.isGood ? a : b);
+    if (atA.margin >= atB.margin) to = b;
+    else from = a;
   }
   return null;
 }
@@ -169,7 +217,7 @@ function ratioBetween(a: number, b: number): number {
   return a / b > 0 ? Math.abs(Math.log(a / b)) : FROM_ZERO;
 }
 
-/** Rounds away from the value as it stands, to as few digits as do not go much further, and checks it as the reader would type it. */
+/** Rounds to as few digits as do not go much further, and checks the result as the reader would type it. */
 function tidyCure(
   linked: LinkedCalculator,
   inputs: Inputs,
@@ -180,28 +228,36 @@ function tidyCure(
   const { given, field } = path;
   const exact = path.at(good);
   for (let digits = 1; digits <= MOST_DIGITS; digits++) {
-    const low = tidyEnd(given, field, field.low, exact.low, digits);
-    const high = tidyEnd(given, field, field.high, exact.high, digits);
-    if (low === null || high === null || low > high) continue;
-    const to = fieldText(given, { low, high }, field.unit);
-    const changed = typedInto(linked, inputs, given.name, to);
-    if (!changed || !isGood(evaluateLimit(linked, changed, limit))) continue;
-    return { name: given.name, to, was: field.understood, ...consequences(linked, inputs, changed, limit) };
+    for (const away of [false, true]) {
+      const low = tidyEnd(given, field, [field.low, exact.low], digits, away);
+      const high = tidyEnd(given, field, [field.high, exact.high], digits, away);
+      if (low === null || high === null || low > high) continue;
+      const to = fieldText(given, { low, high }, field.unit);
+      const changed = typedInto(linked, inputs, given.name, to);
+      if (!changed || !isGood(evaluateLimit(linked, changed, limit))) continue;
+      return { name: given.name, to, was: field.understood, ...consequences(linked, inputs, changed, limit) };
+    }
   }
   return null;
 }
 
-/** One end with few digits in the unit of its field; null if that goes too far. */
-function tidyEnd(given: Given, field: ReadField, was: number, exact: number, digits: number): number | null {
+/** One end with few digits in the unit of its field, the nearest or the next one further from what was; null if that goes too far. */
+function tidyEnd(
+  given: Given,
+  field: ReadField,
+  [was, exact]: readonly [number, number],
+  digits: number,
+  away: boolean,
+): number | null {
   if (exact === was || given.options) return exact;
   const unit = readUnit(field.unit) ?? { factor: 1, offset: 0 };
-  // Through the field's own reading: what is tidy is the number as typed.
-  const scale = given.reading === 'rms' ? Math.SQRT2 : given.reading === 'peak-to-peak' ? 0.5 : 1;
+  // What is to be tidy is the number as typed, not the peak that it stands for.
+  const scale = given.reading === undefined ? 1 : PEAK_FACTORS[given.reading];
   const number = fromSi(exact / scale, unit);
-  const step = given.quantity === 'count' ? 1 : 10 ** (Math.floor(Math.log10(Math.abs(number))) + 1 - digits);
   if (number === 0) return exact;
-  const rounded = exact > was ? Math.ceil(number / step) * step : Math.floor(number / step) * step;
-  const si = toSi(String(Number(rounded.toPrecision(12))), unit) * scale;
+  const step = given.quantity === 'count' ? 1 : 10 ** (Math.floor(Math.log10(Math.abs(number))) + 1 - digits);
+  const round = away ? (exact > was ? Math.ceil : Math.floor) : Math.round;
+  const si = toSi(String(Number((round(number / step) * step).toPrecision(12))), unit) * scale;
   const isTooFar = Math.abs(si - exact) > OVERSHOOT * Math.abs(exact - was) && given.quantity !== 'count';
   return isTooFar ? null : si;
 }

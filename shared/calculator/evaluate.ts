@@ -65,16 +65,28 @@ export function evaluateInOrder(
   return done;
 }
 
-/** Judges one limit alone, as the search for a cure does a thousand times. */
-export function evaluateLimit(linked: LinkedCalculator, inputs: Inputs, limit: LinkedLimit): LimitOutcome {
-  const bench = benchFor(linked, inputs);
+/** Another value or range of one given, in SI base units. */
+export interface Change {
+  readonly name: string;
+  readonly low: number;
+  readonly high: number;
+}
+
+/** Judges one limit alone, with one input changed, as the search for a cure does some hundred times. */
+export function evaluateLimit(
+  linked: LinkedCalculator,
+  inputs: Inputs,
+  limit: LinkedLimit,
+  change?: Change,
+): LimitOutcome {
+  const bench = benchFor(linked, inputs, change);
   const axes = axesOf(bench, limit);
   if (axes.length === 0 || waitingFor(bench, limit).length > 0) return judge(bench, limit, undefined);
   const [found] = searchRanges(bench.frame.slice(), axes, [targetOf(limit)]);
   return judge(bench, limit, found);
 }
 
-function benchFor(linked: LinkedCalculator, inputs: Inputs): Bench {
+function benchFor(linked: LinkedCalculator, inputs: Inputs, change?: Change): Bench {
   const frame = new Float64Array(linked.slots.size).fill(Number.NaN);
   const axes = new Map<string, Axis>();
   const missing = new Set<string>();
@@ -85,7 +97,7 @@ function benchFor(linked: LinkedCalculator, inputs: Inputs): Bench {
       missing.add(given.name);
       continue;
     }
-    const { low, high } = field;
+    const { low, high } = change?.name === given.name ? change : field;
     const axis = axisFor(given.quantity, slot, low, high);
     if (low < high) axes.set(given.name, axis);
     frame[slot] = positionOf(axis, 0.5);

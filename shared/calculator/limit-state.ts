@@ -47,6 +47,7 @@ export function limitPoint(limit: LinkedLimit, frame: Float64Array): LimitPoint 
 function gap(high: number, low: number): number {
   if (high === low) return 0;
   const difference = high - low;
+  if (!Number.isFinite(difference)) return difference;
   return Math.abs(difference) <= ROUNDING * Math.max(Math.abs(high), Math.abs(low)) ? 0 : difference;
 }
 

@@ -11,7 +11,7 @@ export interface Step {
 export interface Footing {
   /** Results to run before it, each after all it reads. */
   readonly steps: readonly Step[];
-  /** Givens and chosen names that it depends on. */
+  /** Givens that it depends on, in the order of the model, and chosen names. */
   readonly inputs: readonly string[];
   /** Names that this release cannot work out: chosen values, results that are only measured. */
   readonly unavailable: readonly string[];
@@ -118,5 +118,7 @@ function footingOf(
   }
   const steps = new Map<number, Step>();
   for (const name of needed) for (const step of results.get(name)?.steps ?? []) steps.set(step.slot, step);
-  return { steps: [...steps.values()], inputs: [...inputs], unavailable: [...unavailable] };
+  const inOrder = model.givens.map((given) => given.name).filter((name) => inputs.has(name));
+  const chosen = [...inputs].filter((name) => !givens.has(name));
+  return { steps: [...steps.values()], inputs: [...inOrder, ...chosen], unavailable: [...unavailable] };
 }

@@ -49,8 +49,8 @@ const POLE_GLANCE_GROWTH = 3;
 const POLE_BISECTIONS = 44;
 const POLE_GROWTH = 1e4;
 
-/** Rounds of the search along each axis in turn from an extreme that is no corner. */
-const ROUNDS = 4;
+/** Most rounds along each axis in turn from an extreme that is no corner; a slanting valley takes about 20. */
+const ROUNDS = 40;
 
 /** Makes the axis of a given's range; a frequency is even in ratio where it can be. */
 export function axisFor(quantity: QuantityKind, slot: number, low: number, high: number): Axis {
@@ -228,8 +228,21 @@ class Search {
     };
     const start = costOf(this.values[best], sign);
     const found = golden(at, share(best - 1), share(best + 1), start);
+    // A range's round numbers are where people put zeros and corners, and the search comes only near them.
+    at(shareOf(axis, roundNear(positionOf(axis, found.at), axis.high - axis.low)));
     if (found.isUnbounded) this.#offer(-sign * Number.POSITIVE_INFINITY, line, along, found.at);
   }
+}
+
+/** The roundest number within the last steps of a search. */
+function roundNear(position: number, span: number): number {
+  const step = 10 ** Math.floor(Math.log10(span * 10 * FINEST));
+  return Math.round(position / step) * step;
+}
+
+function shareOf({ low, high, byRatio }: Axis, position: number): number {
+  const share = byRatio ? Math.log(position / low) / Math.log(high / low) : (position - low) / (high - low);
+  return Math.min(1, Math.max(0, share));
 }
 
 /** What is made small; no value is worse than any. */
