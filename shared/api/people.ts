@@ -3,7 +3,7 @@ import { endpoint, id, instant, onlyRequestId, requestId } from './endpoint.ts';
 import { ROLES } from './permissions.ts';
 
 export const role = z.enum(ROLES);
-export const email = z.email().max(254);
+export const email = z.email('Write an address like name@example.org.').max(254, 'Use at most 254 characters.');
 export const personName = z.string().trim().min(1, 'Write a name.').max(100);
 /** At least 12 characters and no rules of composition; common ones are refused by the server. Source: NIST SP 800-63B, section 5.1.1.2. */
 export const newPassword = z.string().min(12, 'Use at least 12 characters.').max(128, 'Use at most 128 characters.');

@@ -24,7 +24,7 @@ export function Field({ label, hint, error, optional, aside, children }: FramePr
   const describedBy = [hint === undefined ? '' : `${id}-hint`, error === undefined ? '' : `${id}-error`];
   return (
     <div className="field">
-      <div className="flex items-baseline justify-between gap-4">
+      <div className="flex min-h-5 items-baseline justify-between gap-4">
         <label className="lab" htmlFor={id}>
           {label}
           {optional && ' (may stay empty)'}

@@ -26,7 +26,7 @@ export function CoverSheet({ title, lead, team, signedBy, children }: CoverSheet
       <Zones className="cover-down" names={ZONES_DOWN} />
       <div className="cover-sheet">
         <div className="cover-words">
-          <h1 className="text-cover tracking-tight">{title}</h1>
+          <h1 className="text-title tracking-tight sm:text-cover">{title}</h1>
           <div className="mt-4 max-w-[440px] font-read text-ink-2 text-read">{lead}</div>
         </div>
         <div className="cover-drawing">

@@ -11,6 +11,7 @@ const whole = {
   'literata-latin-400-italic': '@fontsource/literata',
   'literata-latin-600-normal': '@fontsource/literata',
   'literata-greek-400-normal': '@fontsource/literata',
+  'literata-greek-600-normal': '@fontsource/literata',
   'sofia-sans-semi-condensed-latin-wght-normal': '@fontsource-variable/sofia-sans-semi-condensed',
   'commit-mono-latin-400-normal': '@fontsource/commit-mono',
 };
