@@ -2,4 +2,4 @@
 export const SIGN_OFF_TICKS = {
   derivation: 'I followed the derivation of each formula',
   hazards: 'I looked at the hazards and their cautions',
-} as const;
+};
