@@ -62,7 +62,8 @@ async function allRows(db: FreshApp['db'], table: string): Promise<unknown> {
   return (await db.execute(sql`select * from ${sql.identifier(table)} order by 1::text collate "C", 2`)) as unknown;
 }
 
-describe('a backup', () => {
+// Making a database from nothing takes seconds of processor time.
+describe('a backup', { timeout: 120_000 }, () => {
   test('put into an empty place gives every row of every table again', async () => {
     const file = join(folder, 'team.backup');
     const end = await writeBackup(fresh.db, file, facts);
@@ -108,7 +109,7 @@ describe('a backup', () => {
   });
 });
 
-describe('restoring', () => {
+describe('restoring', { timeout: 120_000 }, () => {
   const restoreChanged = async (change: (text: string) => string): Promise<string> => {
     const file = join(folder, 'team.backup');
     await writeBackup(fresh.db, file, facts);
