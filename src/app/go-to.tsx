@@ -132,6 +132,6 @@ function useSlashKey(box: { readonly current: HTMLInputElement | null }): void {
   }, [singleKeys, box]);
 }
 
-function isTypedInto(target: EventTarget | null): boolean {
+export function isTypedInto(target: EventTarget | null): boolean {
   return target instanceof HTMLElement && (target.isContentEditable || target.matches('input, textarea, select'));
 }

@@ -3,6 +3,7 @@ import { paths } from '../lib/paths.ts';
 import { useServerNews } from '../lib/server-news.ts';
 import { Button } from '../ui/button.tsx';
 import { HeaderStrip } from './header-strip.tsx';
+import { KeysDialog } from './keys-dialog.tsx';
 import { Notices } from './notices.tsx';
 import { RouteChange } from './route-change.tsx';
 
@@ -17,6 +18,7 @@ export function Shell() {
       <ServerNewsBar />
       <Notices />
       <RouteChange />
+      <KeysDialog />
       <main id="sheet" className="page" tabIndex={-1}>
         <Outlet />
       </main>

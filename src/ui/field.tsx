@@ -63,7 +63,7 @@ export function TextField({ label, hint, error, optional, className = '', ...inp
 export function PasswordField({ label, hint, error, ...input }: Omit<TextFieldProps, 'type'>) {
   const [isShown, setShown] = useState(false);
   const toggle = (
-    <button type="button" className="btn-text text-note" aria-pressed={isShown} onClick={() => setShown(!isShown)}>
+    <button type="button" className="btn-text text-label" aria-pressed={isShown} onClick={() => setShown(!isShown)}>
       {isShown ? 'hide' : 'show'}
       <span className="sr-only"> what is typed under {label}</span>
     </button>

@@ -16,11 +16,15 @@ export interface HintProps {
 /** A note on hover, focus or tap. It can be pointed at without going, and Esc closes it (WCAG 2.2, 1.4.13). */
 export function Hint({ children, note, className = '', label }: HintProps) {
   const [isOpen, setOpen] = useState(false);
+  const mark = useRef<HTMLButtonElement>(null);
+  // Inside the landmark, or the dialog, that the mark belongs to.
+  const [home, setHome] = useState<HTMLElement | null>(null);
   const leaving = useRef<ReturnType<typeof setTimeout> | undefined>(undefined);
   useEffect(() => () => clearTimeout(leaving.current), []);
   const stay = () => clearTimeout(leaving.current);
   const enter = () => {
     stay();
+    setHome(mark.current?.closest<HTMLElement>('[role="dialog"], main, header') ?? null);
     setOpen(true);
   };
   const leave = () => {
@@ -31,6 +35,7 @@ export function Hint({ children, note, className = '', label }: HintProps) {
     <Radix.Root open={isOpen} onOpenChange={setOpen}>
       <Radix.Anchor asChild>
         <button
+          ref={mark}
           type="button"
           aria-label={label}
           aria-expanded={isOpen}
@@ -44,7 +49,7 @@ export function Hint({ children, note, className = '', label }: HintProps) {
           {children}
         </button>
       </Radix.Anchor>
-      <Radix.Portal>
+      <Radix.Portal container={home}>
         <Radix.Content
           role="note"
           sideOffset={6}

@@ -8,15 +8,14 @@ export interface MenuProps {
   readonly align?: 'start' | 'end';
 }
 
+/** Its items stand beside the trigger in the page's order, so they stay inside the landmark they belong to. */
 export function Menu({ trigger, children, align = 'end' }: MenuProps) {
   return (
     <Radix.Root modal={false}>
       <Radix.Trigger asChild>{trigger}</Radix.Trigger>
-      <Radix.Portal>
-        <Radix.Content align={align} sideOffset={6} collisionPadding={8} className="float min-w-48 py-1">
-          {children}
-        </Radix.Content>
-      </Radix.Portal>
+      <Radix.Content align={align} sideOffset={6} collisionPadding={8} className="float min-w-48 py-1">
+        {children}
+      </Radix.Content>
     </Radix.Root>
   );
 }

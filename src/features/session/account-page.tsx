@@ -25,7 +25,7 @@ export function AccountPage() {
   return (
     <Sheet
       margin={
-        <div className="pt-10">
+        <div className="lg:pt-10">
           <MarginNote label={person.role}>You may {ROLE_WORDS[person.role]}.</MarginNote>
         </div>
       }

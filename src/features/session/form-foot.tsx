@@ -13,8 +13,8 @@ export interface FormFootProps {
 export function FormFoot({ form, label, acting, note }: FormFootProps) {
   return (
     <BlockRow>
-      <div className="flex flex-wrap items-start justify-between gap-4">
-        <div className="max-w-96">
+      <div className="grid grid-cols-[minmax(0,1fr)_auto] items-start gap-4">
+        <div>
           {form.refusal !== null && <p className="field-error">{form.refusal.message}</p>}
           {form.mending !== null && <p className="field-error">{form.mending}</p>}
           {note !== undefined && <p className="note">{note}</p>}

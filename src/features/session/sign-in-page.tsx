@@ -98,9 +98,9 @@ function SignInForm() {
         <PasswordField label="Password" autoComplete="current-password" {...form.field('password')} />
       </BlockRow>
       <BlockRow>
-        <div className="flex flex-wrap items-start justify-between gap-4">
+        <div className="grid grid-cols-[minmax(0,1fr)_auto] items-start gap-4">
           <div>
-            {form.refusal !== null && <p className="field-error max-w-96">{form.refusal.message}</p>}
+            {form.refusal !== null && <p className="field-error">{form.refusal.message}</p>}
             {form.mending !== null && <p className="field-error">{form.mending}</p>}
             <Link to={paths.forgotten()}>I cannot sign in</Link>
           </div>

@@ -5,7 +5,7 @@ export const ROLE_WORDS = {
   reader: 'read recipes, put in numbers and keep designs',
   author: 'read, and write recipes',
   editor: 'read, write, and sign off what others wrote',
-  admin: 'all of that, and run the team',
+  admin: 'read, write, sign off, and run the team',
 } as const satisfies Record<Role, string>;
 
 export const PASSWORD_HINT = 'At least 12 characters; any will do. A few words in a row are easy to keep in mind.';

@@ -59,6 +59,7 @@ export function LinkQuestion({ about, onClose }: { about: LinkAbout; onClose: ()
             label="The link, shown this once"
             hint={`Works until ${momentText(made.expiresAt)}, once. Whoever has it can use it: hand it over in person or by a way you trust.`}
             readOnly
+            ref={focusIt}
             value={made.url}
             onFocus={(event) => event.target.select()}
           />
@@ -70,6 +71,11 @@ export function LinkQuestion({ about, onClose }: { about: LinkAbout; onClose: ()
       )}
     </Dialog>
   );
+}
+
+/** After the act the focus goes to what it gave. */
+function focusIt(field: HTMLInputElement | null): void {
+  field?.focus();
 }
 
 const CONSEQUENCES = {
