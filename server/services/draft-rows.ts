@@ -53,9 +53,11 @@ export async function loadDrafts(db: Db, where: SQL | undefined): Promise<readon
       authors: people(sql`draft_author`, sql`and x.removed_at is null`),
       removed: people(sql`draft_author`, sql`and x.removed_at is not null`),
       writers: people(sql`draft_writer`, sql``),
+      // Of a draft that is being written the last act was not a sending, so that two acts within one millisecond keep their order.
       lastAct: sql<{ by: string; at: string; reason: string; act: string } | null>`(
         select jsonb_build_object('by', p.name, 'at', x.at, 'reason', x.note, 'act', x.act)
-        from review x join "user" p on p.id = x.user_id where x.draft_id = ${draft.id} order by x.at desc, x.id limit 1)`,
+        from review x join "user" p on p.id = x.user_id where x.draft_id = ${draft.id} and x.act <> 'sent'
+        order by x.at desc, x.id limit 1)`,
     })
     .from(draft)
     .innerJoin(recipe, eq(recipe.id, draft.recipeId))

@@ -17,6 +17,8 @@ export interface KeptSave {
   readonly id: string;
   readonly userId: string;
   readonly at: Date;
+  /** Null when it was kept to the side. */
+  readonly revision: number | null;
   /** Sent, lost a conflict, or the parent of one. */
   readonly pinned: boolean;
 }
@@ -28,7 +30,7 @@ export interface KeptSave {
  * Cost: linear in the saves, after sorting.
  */
 export function savesToDrop(saves: readonly KeptSave[], now: Date): readonly string[] {
-  const newestFirst = [...saves].sort((a, b) => b.at.getTime() - a.at.getTime());
+  const newestFirst = [...saves].sort(newestFirstOrder);
   const buckets = new Set<string>();
   const earliestSeen = new Map<string, number>();
   const dropped: string[] = [];
@@ -48,13 +50,24 @@ export function savesToDrop(saves: readonly KeptSave[], now: Date): readonly str
   return dropped;
 }
 
+/** Of two saves within one millisecond the one with the higher revision is the newer. */
+function newestFirstOrder(a: KeptSave, b: KeptSave): number {
+  return b.at.getTime() - a.at.getTime() || (b.revision ?? -1) - (a.revision ?? -1);
+}
+
 /** Drops what the keeping rule lets go, draft by draft. Gives how many went. Run by a job, not by a save. */
 export async function pruneDraftSaves(db: Db, now: Date): Promise<number> {
   const drafts = await db.selectDistinct({ id: draftSave.draftId }).from(draftSave);
   let count = 0;
   for (const { id } of drafts) {
     const saves = await db
-      .select({ id: draftSave.id, userId: draftSave.userId, at: draftSave.createdAt, pinned: draftSave.pinned })
+      .select({
+        id: draftSave.id,
+        userId: draftSave.userId,
+        at: draftSave.createdAt,
+        revision: draftSave.revision,
+        pinned: draftSave.pinned,
+      })
       .from(draftSave)
       .where(eq(draftSave.draftId, id));
     const gone = savesToDrop(saves, now);

@@ -148,6 +148,10 @@ export const setAuthors: Service<'drafts.setAuthors'> = async (context, input) =
   if (!found.ok) return found;
   if (!mayManageDraft(person, found.value))
     return fail({ kind: 'forbidden', detail: 'The owner of a draft invites its authors.' });
+  if (found.value.state !== 'draft' && found.value.state !== 'in-review') {
+    const detail = 'This draft is closed, so nobody can be invited to it any more.';
+    return fail({ kind: 'stale', detail, extra: { state: found.value.state } });
+  }
   const wanted = [...new Set(input.personIds)].filter((id) => id !== found.value.ownerId);
   const refused = await refuseAuthors(db, wanted);
   if (refused !== null) return fail(refused);

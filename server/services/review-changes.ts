@@ -96,7 +96,7 @@ const TICK_LENGTH = 200;
 /** What the person who decides must tick, in these words. */
 export function ticksFor(impact: DesignImpact): readonly string[] {
   const broken = impact.seen.filter((one) => one.changes.some((change) => change.newlyBroken));
-  const ticks = [TICK_DERIVATION, TICK_HAZARDS];
+  const ticks: string[] = [TICK_DERIVATION, TICK_HAZARDS];
   if (broken.length > SINGLE_TICKS) ticks.push(`I looked at the ${broken.length} designs in which a limit would break`);
   else ticks.push(...broken.map(designTick));
   const hidden = impact.privateNewlyBroken;

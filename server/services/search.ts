@@ -47,7 +47,11 @@ export function createRecipeSearch(): RecipeSearch {
   let building: Promise<void> | undefined;
 
   async function build(db: Db): Promise<void> {
-    building ??= addAll(index, db);
+    building ??= addAll(index, db).catch((error: unknown) => {
+      // The next search tries again.
+      building = undefined;
+      throw error;
+    });
     await building;
   }
   async function find(db: Db, query: string): Promise<readonly Hit[]> {

@@ -46,7 +46,6 @@ export async function loadStarters(context: StarterContext): Promise<number> {
   }
   await context.db.transaction(async (tx) => {
     for (const one of compiled) await insertStarter({ ...context, db: tx }, one);
-    const detail = `supplied with Quadrille ${context.release}`;
     await takeTopics(
       tx,
       compiled.map((one) => one.document),
