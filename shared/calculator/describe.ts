@@ -5,9 +5,6 @@ import type { LimitModel, ResultModel } from './model.ts';
 import type { LimitOutcome, Outcome, Sample } from './outcome.ts';
 import { LIMIT_STATE_WORDS } from './wording.ts';
 
-/** One end of a range so much smaller than the other is what the rounding of doubles left of a zero. */
-const NOISE = 1e-14;
-
 export interface Described {
   /** Short, for the number's place: `2.007 … 6.993 V`, `unbounded`, `no value`, `waiting`. */
   readonly text: string;
@@ -59,9 +56,7 @@ function describeKnown(outcome: Extract<Outcome, { state: 'known' }>, options: W
   if (lowest.kind === 'no-value' || highest.kind === 'no-value') return describeSample(middle, options);
   const somewhere = over.everywhere ? '' : ', not everywhere';
   if (lowest.kind === 'finite' && highest.kind === 'finite') {
-    const least = NOISE * Math.max(Math.abs(lowest.si), Math.abs(highest.si));
-    const [low, high] = [lowest.si, highest.si].map((si) => (Math.abs(si) < least ? 0 : si));
-    const range = writeRange(low ?? 0, high ?? 0, options);
+    const range = writeRange(lowest.si, highest.si, options);
     return { text: range.text + somewhere, words: range.text.replace(' … ', ' to ') + somewhere };
   }
   const ends = [describeSample(lowest, options).text, describeSample(highest, options).text];

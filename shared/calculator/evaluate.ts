@@ -32,15 +32,12 @@ export function evaluate(linked: LinkedCalculator, inputs: Inputs): Evaluation {
   const bench = benchFor(linked, inputs);
   const results = [...linked.results.values()];
   for (const result of results) runSteps(bench.frame, result.steps.slice(-1));
-  const middles = new Map(results.map((result) => [result, middleOf(bench, result)]));
   const extremes = searchAll(bench);
   const outcomes: Record<string, Outcome> = {};
   for (const result of results) {
     const waitsFor = waitingFor(bench, result);
     outcomes[result.model.name] =
-      waitsFor.length > 0
-        ? { state: 'waiting', for: waitsFor }
-        : knownOutcome(bench, result, middles.get(result), extremes.get(result));
+      waitsFor.length > 0 ? { state: 'waiting', for: waitsFor } : knownOutcome(bench, result, extremes.get(result));
   }
   const limits = linked.limits.map((limit) => judge(bench, limit, extremes.get(limit)));
   return { outcomes, limits, notValid: notValid(linked, inputs, limits) };
@@ -193,13 +190,8 @@ function reciprocal(of: CheckedExpr): CheckedExpr {
   return { kind: 'arithmetic', span, type: [0, 0, 0, 0, 0, 0], operator: '/', left: one, right: of };
 }
 
-function knownOutcome(
-  bench: Bench,
-  result: LinkedResult,
-  middle: Explained | undefined,
-  extremes: Extremes | undefined,
-): Outcome {
-  const nominal = middle ?? middleOf(bench, result);
+function knownOutcome(bench: Bench, result: LinkedResult, extremes: Extremes | undefined): Outcome {
+  const nominal = middleOf(bench, result);
   if (!extremes) return { state: 'known', middle: nominal.sample, ...becauseOf([nominal]) };
   const lowest = extremeSample(bench, result, extremes, 'lowest');
   const highest = extremeSample(bench, result, extremes, 'highest');

@@ -49,6 +49,9 @@ const POLE_GLANCE_GROWTH = 3;
 const POLE_BISECTIONS = 44;
 const POLE_GROWTH = 1e4;
 
+/** An extreme inside a line that is so much smaller than the line's largest is what the rounding of doubles left of a zero. */
+const NOISE = 1e-14;
+
 /** Most rounds along each axis in turn from an extreme that is no corner; a slanting valley takes about 20. */
 const ROUNDS = 40;
 
@@ -148,7 +151,7 @@ class Search {
       const counts = Math.max(Math.abs(before), Math.abs(after)) > 1e-9 * largest;
       if (before * after < 0 && counts) this.#lookForPole(along, line, i, before, after);
     }
-    for (const sign of this.#signs()) this.#refineBest(sign, along, line);
+    for (const sign of this.#signs()) this.#refineBest(sign, along, line, largest);
   }
 
   /** Goes on along each axis in turn from an extreme that lies inside; corners have been seen along every axis. */
@@ -178,6 +181,12 @@ class Search {
     return sign === 1 ? this.extremes.lowest : this.extremes.highest;
   }
 
+  /** Nothing can lie beyond. A target that wants only the lowest counts as done on the other side. */
+  #isUnbounded(sign: Sign): boolean {
+    if (sign === -1 && this.target.wants === 'lowest') return true;
+    return this.#best(sign)?.raw === -sign * Number.POSITIVE_INFINITY;
+  }
+
   #offer(raw: number, line: readonly number[], along: number, share: number): void {
     const { extremes } = this;
     if (Number.isNaN(raw)) {
@@ -197,8 +206,10 @@ class Search {
   /** Bisects a change of sign: a zero shrinks, a pole grows without end and is unbounded on both sides. */
   #lookForPole(along: number, line: readonly number[], right: number, before: number, after: number): void {
     const axis = this.#axes[along];
-    if (!axis) return;
-    const first = Math.max(Math.abs(before), Math.abs(after));
+    if (!axis || (this.#isUnbounded(1) && this.#isUnbounded(-1))) return;
+    // Where one side is an infinity already, the other must grow towards it.
+    const first = Math.max(...[before, after].map((value) => (Number.isFinite(value) ? Math.abs(value) : 0)));
+    if (first === 0) return;
     let a = (right - 1) / (POINTS - 1);
     let b = right / (POINTS - 1);
     let size = first;
@@ -216,10 +227,10 @@ class Search {
     this.#offer(Number.NEGATIVE_INFINITY, line, along, a);
   }
 
-  #refineBest(sign: Sign, along: number, line: readonly number[]): void {
+  #refineBest(sign: Sign, along: number, line: readonly number[], largest: number): void {
     const axis = this.#axes[along];
     const best = bestInterior(this.values, sign);
-    if (!axis || best === null) return;
+    if (!axis || best === null || this.#isUnbounded(sign)) return;
     const share = (i: number) => i / (POINTS - 1);
     const at = (x: number) => {
       const value = this.#valueAt(axis, x);
@@ -230,6 +241,7 @@ class Search {
     const found = golden(at, share(best - 1), share(best + 1), start);
     // A range's round numbers are where people put zeros and corners, and the search comes only near them.
     at(shareOf(axis, roundNear(positionOf(axis, found.at), axis.high - axis.low)));
+    if (Math.abs(found.cost) < NOISE * largest) this.#offer(0, line, along, found.at);
     if (found.isUnbounded) this.#offer(-sign * Number.POSITIVE_INFINITY, line, along, found.at);
   }
 }
@@ -289,5 +301,5 @@ function golden(cost: (share: number) => number, from: number, to: number, start
   // A smooth extreme gains nothing between the two widths; only what still gains is followed further.
   const isSteep = Number.isFinite(fine) && gained > 1e-6 * Math.abs(coarse);
   for (let i = 0; isSteep && i < STEPS_BEYOND; i++) shrink();
-  return { at: (a + b) / 2, isUnbounded: isSteep && fine - best > 0.5 * gained };
+  return { at: (a + b) / 2, cost: best, isUnbounded: isSteep && fine - best > 0.5 * gained };
 }
