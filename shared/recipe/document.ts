@@ -95,6 +95,8 @@ export interface Proof {
 export interface CompileFacts {
   /** Slug → versions that can be linked. */
   readonly recipes?: Readonly<Record<string, readonly number[]>>;
+  /** Set where `recipes` is only a part of all: a slug it lacks is then not checked, instead of dead. */
+  readonly recipesElsewhere?: true;
   readonly topics?: readonly string[];
   /** The slug that a first publication fixed. */
   readonly fixedSlug?: string;
