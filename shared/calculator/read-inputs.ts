@@ -133,8 +133,10 @@ function outsideLimits(given: Given, field: ReadField): FieldProblem | null {
   const below = min !== undefined && low < min - ROUNDING * Math.abs(min);
   const above = max !== undefined && high > max + ROUNDING * Math.abs(max);
   if (!below && !above) return null;
+  // "1.000 kΩ to 1.000 MΩ" whatever prefix was typed; only % and dBu, which are no prefixes, stay as they were.
+  const asTyped = given.quantity === 'ratio' || unit.startsWith('dB') ? { unit } : {};
   const write = (si: number | undefined) =>
-    si === undefined ? '' : writeValue(si, { kind: given.quantity, unit, reading: given.reading }).text;
+    si === undefined ? '' : writeValue(si, { kind: given.quantity, reading: given.reading, ...asTyped }).text;
   return problem<FieldCode>('outside-limits', wholeOf(text), {
     typed: shortened(text.trim()),
     min: write(min),

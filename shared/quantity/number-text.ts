@@ -75,15 +75,15 @@ interface MarkingLetters {
 const MARKINGS: { readonly [Kind in QuantityKind]?: MarkingLetters } = {
   resistance: {
     letters: { L: 'mΩ', R: 'Ω', k: 'kΩ', K: 'kΩ', M: 'MΩ', G: 'GΩ', T: 'TΩ' },
-    pattern: /^([+\-−]?)([0-9]*)([LRkKMGT])([0-9]*)$/,
+    pattern: /^([+\-−]?)([0-9]*\.?[0-9]*)([LRkKMGT])([0-9]*)$/,
   },
   capacitance: {
     letters: { p: 'pF', n: 'nF', µ: 'µF', '\u03bc': 'µF', u: 'µF', m: 'mF', F: 'F' },
-    pattern: /^([+\-−]?)([0-9]*)([pnµ\u03bcumF])([0-9]*)$/,
+    pattern: /^([+\-−]?)([0-9]*\.?[0-9]*)([pnµ\u03bcumF])([0-9]*)$/,
   },
   inductance: {
     letters: { n: 'nH', µ: 'µH', '\u03bc': 'µH', u: 'µH', m: 'mH' },
-    pattern: /^([+\-−]?)([0-9]*)([nµ\u03bcum])([0-9]*)$/,
+    pattern: /^([+\-−]?)([0-9]*\.?[0-9]*)([nµ\u03bcum])([0-9]*)$/,
   },
 };
 
@@ -93,7 +93,7 @@ export interface MarkingRead {
 }
 
 /**
- * Reads a marking code; null where the text is none for this kind. Tolerance letters (`4K7J`) are not read.
+ * Reads a marking code, or a number that ends in its letter (`18.7k`: common practice, no source); null where the text is none for this kind. Tolerance letters (`4K7J`) are not read.
  * When it cannot: `prefix-case` for `10K`, which looks like kelvins, and `number-too-long`.
  */
 export function readMarking(text: string, kind: QuantityKind): Result<MarkingRead, Refusal> | null {
@@ -101,7 +101,7 @@ export function readMarking(text: string, kind: QuantityKind): Result<MarkingRea
   const match = marking?.pattern.exec(text);
   if (marking === undefined || !match) return null;
   const [, sign = '', whole = '', letter = '', part = ''] = match;
-  if (whole === '' && part === '') return null;
+  if (!/[0-9]/.test(whole + part) || (whole.includes('.') && part !== '')) return null;
   if (text.length > MOST_CHARACTERS) return fail({ code: 'number-too-long', facts: { most: MOST_CHARACTERS } });
   if (letter === 'K' && part === '') {
     return fail({ code: 'prefix-case', facts: { typed: text, write: `${sign}${whole}k` } });

@@ -183,11 +183,11 @@ describe('readInputs', () => {
     expect(inputs.refused).toEqual(['R1']);
   });
 
-  test('words a refusal with the limits of entry in the unit of the field', () => {
+  test('words a refusal with the limits of entry in engineering prefixes', () => {
     const field = readInputs(model, { R1: '999 Ω' }).fields.get('R1');
     if (field?.state !== 'refused') throw new Error('R1 was read');
     expect(fieldMessage(field.problem).message.replaceAll('\u2009', ' ')).toBe(
-      '999 Ω is outside 1000 Ω to 1.000×10⁶ Ω, but this input needs to lie between them.',
+      '999 Ω is outside 1.000 kΩ to 1.000 MΩ, but this input needs to lie between them.',
     );
   });
 

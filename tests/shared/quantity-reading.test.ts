@@ -257,6 +257,19 @@ describe('readValue, a single value', () => {
     expect(ends(text, kind)[0]).toBe(si);
   });
 
+  test.each([
+    ['18.7k', 'resistance', 18700],
+    ['.33R', 'resistance', 0.33],
+    ['4.7n', 'capacitance', 4.7e-9],
+    ['2.2u', 'inductance', 2.2e-6],
+  ] as const)('%s ends in the letter of its prefix (common practice, no source)', (text, kind, si) => {
+    expect(ends(text, kind)[0]).toBe(si);
+  });
+
+  test('a code has one decimal sign: 1.5k2 is none', () => {
+    expect(refusal('1.5k2', 'resistance')[0]).toBe('unit-unknown');
+  });
+
   test('an exponent is no marking code and a marking code no exponent', () => {
     expect(ends('1e3 Ω', 'resistance')[0]).toBe(1000);
     expect(ends('1M0', 'resistance')[0]).toBe(1e6);
