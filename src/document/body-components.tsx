@@ -1,7 +1,7 @@
-import type { ComponentProps, ReactNode } from 'react';
 import { describeOutcome, type Outcome, type Sample } from '#calculator';
 import { Caution } from '../ui/blocks.tsx';
 import { useSurroundings } from './body-context.ts';
+import type { BodyAttributes, BodyComponents, BodyProps } from './body-nodes.tsx';
 import { CalculatorPanel } from './calculator-panel.tsx';
 import { sectionsOf } from './headings.ts';
 import { brokenUnder } from './key-result.ts';
@@ -11,30 +11,37 @@ import { WideTable } from './wide-table.tsx';
 
 /** How the recipe's own elements and a few of HTML's are drawn; the rest is drawn as it is. */
 export const BODY_COMPONENTS = {
-  h1: SectionHeading,
   h2: SectionHeading,
   h3: PartHeading,
   table: ProseTable,
+  a: ProseLink,
+  input: TaskBox,
   'recipe-calculator': CalculatorPlace,
   'recipe-value': LiveValue,
   'recipe-link': RecipeLink,
   'recipe-caution': RecipeCaution,
   'recipe-note': RecipeNote,
-};
+} as const satisfies BodyComponents;
 
-function SectionHeading({ id, children }: ComponentProps<'h2'>) {
+/** The compiler writes only what the element takes, so a missing text is one that the author left out. */
+function textOf(attributes: BodyAttributes, name: string): string | undefined {
+  const value = Object.hasOwn(attributes, name) ? attributes[name] : undefined;
+  return value === undefined ? undefined : String(value);
+}
+
+function SectionHeading({ attributes, children }: BodyProps) {
   return (
-    <h2 id={id}>
-      <HeadingNumber id={id} />
+    <h2 {...attributes}>
+      <HeadingNumber id={textOf(attributes, 'id')} />
       {children}
     </h2>
   );
 }
 
-function PartHeading({ id, children }: ComponentProps<'h3'>) {
+function PartHeading({ attributes, children }: BodyProps) {
   return (
-    <h3 id={id} className="prose-part">
-      <HeadingNumber id={id} />
+    <h3 {...attributes}>
+      <HeadingNumber id={textOf(attributes, 'id')} />
       {children}
     </h3>
   );
@@ -46,15 +53,30 @@ function HeadingNumber({ id }: { id: string | undefined }) {
   return section ? <span className="section-number">{section.number} </span> : null;
 }
 
-function ProseTable(props: ComponentProps<'table'>) {
+function ProseTable({ attributes, children }: BodyProps) {
   return (
     <WideTable label="Table">
-      <table {...props} />
+      <table {...attributes}>{children}</table>
     </WideTable>
   );
 }
 
-function CalculatorPlace({ id }: { id: string }) {
+function ProseLink({ attributes, children }: BodyProps) {
+  const isOutside = /^https?:/.test(textOf(attributes, 'href') ?? '');
+  return (
+    <a {...attributes} {...(isOutside ? { rel: 'noreferrer' } : {})}>
+      {children}
+    </a>
+  );
+}
+
+/** A task list's box only says how the author left it. */
+function TaskBox({ attributes }: BodyProps) {
+  return <span role="img" aria-label={attributes.checked ? 'done' : 'not done'} className="task-box" />;
+}
+
+function CalculatorPlace({ attributes }: BodyProps) {
+  const id = textOf(attributes, 'id') ?? '';
   const { calculators, document, panels } = useSurroundings();
   const state = calculators.byId.get(id);
   if (!state) return null;
@@ -69,13 +91,10 @@ function CalculatorPlace({ id }: { id: string }) {
   );
 }
 
-interface LiveValueProps {
-  readonly of: string;
-  readonly at?: string;
-}
-
 /** A live number in the prose, in ink like the words around it; what is not valid says so. */
-function LiveValue({ of, at }: LiveValueProps) {
+function LiveValue({ attributes }: BodyProps) {
+  const of = textOf(attributes, 'of') ?? '';
+  const at = textOf(attributes, 'at');
   const { calculators } = useSurroundings();
   const dot = of.indexOf('.');
   const state = calculators.byId.get(of.slice(0, dot));
@@ -114,17 +133,20 @@ function endOf(outcome: Outcome, at: string | undefined): Outcome {
   return pick(at.endsWith('low') ? outcome.over.lowest : outcome.over.highest);
 }
 
-function RecipeLink({ slug, version }: { slug: string; version?: string | number }) {
+function RecipeLink({ attributes }: BodyProps) {
   const { recipeLink } = useSurroundings();
-  const number = version === undefined ? undefined : Number(version);
-  return recipeLink ? recipeLink(slug, number) : <span className="recipe-link">{slug.replaceAll('-', ' ')}</span>;
+  const slug = textOf(attributes, 'slug') ?? '';
+  const version = textOf(attributes, 'version');
+  if (!recipeLink) return <span className="recipe-link">{slug.replaceAll('-', ' ')}</span>;
+  return recipeLink(slug, version === undefined ? undefined : Number(version));
 }
 
-function RecipeCaution({ kind, children }: { kind?: string; children?: ReactNode }) {
-  return <Caution title={capitalised(kind ?? 'caution')}>{children}</Caution>;
+function RecipeCaution({ attributes, children }: BodyProps) {
+  return <Caution title={capitalised(textOf(attributes, 'kind') ?? 'caution')}>{children}</Caution>;
 }
 
-function RecipeNote({ kind, children }: { kind?: string; children?: ReactNode }) {
+function RecipeNote({ attributes, children }: BodyProps) {
+  const kind = textOf(attributes, 'kind');
   return (
     <aside className="margin-note" aria-label={`Note: ${kind ?? 'remark'}`}>
       <b>{capitalised(kind ?? 'note')}.</b> {children}

@@ -1,10 +1,8 @@
-import { toJsxRuntime } from 'hast-util-to-jsx-runtime';
 import { type MouseEvent, type ReactNode, useMemo } from 'react';
-import { Fragment, jsx, jsxs } from 'react/jsx-runtime';
 import type { RecipeDocument } from '#recipe';
 import { BODY_COMPONENTS } from './body-components.tsx';
 import { BodyContext, type BodySurroundings } from './body-context.ts';
-import { hastOf } from './body-hast.ts';
+import { drawBody } from './body-nodes.tsx';
 import './document.css';
 import type { CalculatorsState } from './use-calculators.ts';
 
@@ -28,10 +26,7 @@ export interface RecipeViewProps {
 /** The page of a recipe: prose, maths, notes, cautions, live numbers and, where they stand in the text, its calculators. */
 export function RecipeView({ document, calculators, onFollow, panels = 'inline', recipeLink }: RecipeViewProps) {
   const isFollowed = onFollow !== undefined;
-  const drawn = useMemo(
-    () => toJsxRuntime(hastOf(document.body, isFollowed), { Fragment, jsx, jsxs, components: BODY_COMPONENTS }),
-    [document, isFollowed],
-  );
+  const drawn = useMemo(() => drawBody(document.body, BODY_COMPONENTS, isFollowed), [document, isFollowed]);
   const surroundings = useMemo<BodySurroundings>(
     () => ({ document, calculators, panels, recipeLink }),
     [document, calculators, panels, recipeLink],
