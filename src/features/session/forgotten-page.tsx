@@ -36,7 +36,8 @@ export function ForgottenPage() {
       ) : (
         <BlockRow>
           <p>
-            <b>Asked.</b> If {asked} belongs to somebody here, a link is on its way; it works for an hour, once.
+            <b>Asked.</b> If {asked} belongs to somebody here, a link goes there; it works once. Where the team sends no
+            mail, an admin hands it over.
           </p>
         </BlockRow>
       )}

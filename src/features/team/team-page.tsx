@@ -41,7 +41,7 @@ export function TeamPage() {
   return (
     <Sheet
       margin={
-        <div className="lg:pt-10">
+        <div className="hidden lg:block lg:pt-10">
           <MarginNote label="Team">{team.name}</MarginNote>
           <MarginNote label="Time zone">{team.timeZone}</MarginNote>
         </div>
