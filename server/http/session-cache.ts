@@ -11,11 +11,17 @@ const REMEMBERED_MS = 5000;
 /** Far above the people of one team; reached only by cookies that somebody makes up. */
 const MOST_ENTRIES = 5000;
 
+/** A session as the database has it: whose it is, and whether they may act. */
+interface Found {
+  readonly userId: string | null;
+  readonly person: Person | null;
+}
+
 interface Entry {
   readonly at: number;
-  readonly person: Promise<Person | null>;
-  /** Undefined while the database is asked. */
-  personId?: string | null;
+  readonly found: Promise<Found>;
+  /** Undefined while the database is asked; null for a session of nobody. */
+  userId?: string | null;
 }
 
 export interface SessionCache extends SessionReader {
@@ -33,11 +39,11 @@ export function makeSessionCache(auth: Auth, clock: () => number): SessionCache 
 
   function remember(cookie: string, headers: IncomingHttpHeaders): Entry {
     if (entries.size >= MOST_ENTRIES) entries.clear();
-    const entry: Entry = { at: clock(), person: readSession(auth, headers) };
+    const entry: Entry = { at: clock(), found: readSession(auth, headers) };
     entries.set(cookie, entry);
-    entry.person.then(
-      (person) => {
-        entry.personId = person?.id ?? null;
+    entry.found.then(
+      ({ userId }) => {
+        entry.userId = userId;
       },
       // Not remembered; whoever asked is told by the same promise.
       () => entries.get(cookie) === entry && entries.delete(cookie),
@@ -51,12 +57,12 @@ export function makeSessionCache(auth: Auth, clock: () => number): SessionCache 
       if (cookie === undefined) return null;
       const known = entries.get(cookie);
       const fresh = known && clock() - known.at < REMEMBERED_MS ? known : remember(cookie, headers);
-      return fresh.person;
+      return (await fresh.found).person;
     },
     forget(personId) {
       for (const [cookie, entry] of entries) {
         // One that is still being read may have been read before the change.
-        if (entry.personId === undefined || entry.personId === personId) entries.delete(cookie);
+        if (entry.userId === undefined || entry.userId === personId) entries.delete(cookie);
       }
     },
     async forgetOne(headers) {
@@ -66,9 +72,10 @@ export function makeSessionCache(auth: Auth, clock: () => number): SessionCache 
   };
 }
 
-async function readSession(auth: Auth, headers: IncomingHttpHeaders): Promise<Person | null> {
+async function readSession(auth: Auth, headers: IncomingHttpHeaders): Promise<Found> {
   const found = await auth.api.getSession({ headers: fromNodeHeaders(headers) });
-  if (!found || found.user.deactivatedAt) return null;
-  const { id, name, email } = found.user;
-  return { id, name, email, role: role.parse(found.user.role) };
+  if (!found) return { userId: null, person: null };
+  const { id, name, email, deactivatedAt } = found.user;
+  const person = deactivatedAt ? null : { id, name, email, role: role.parse(found.user.role) };
+  return { userId: id, person };
 }

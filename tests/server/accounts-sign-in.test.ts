@@ -1,9 +1,13 @@
 import { eq } from 'drizzle-orm';
 import request from 'supertest';
 import { describe, expect, test } from 'vitest';
+import { createApp } from '../../server/app.ts';
 import { knownBrowser, session, signInFailure, user } from '../../server/database/schema.ts';
-import { type AccountApp, accountApp, type Browser, PASSWORD } from './account-app.ts';
+import { createAccounts } from '../../server/http/accounts.ts';
+import { noPages } from '../../server/http/pages.ts';
+import { ACCOUNT_SERVICES, type AccountApp, accountApp, type Browser, PASSWORD } from './account-app.ts';
 import { ORIGIN } from './fresh-app.ts';
+import { standIns } from './stand-ins.ts';
 
 const MINUTE = 60_000;
 const WRONG = 'nobody would guess this';
@@ -29,6 +33,32 @@ describe('signing in', () => {
       expect(cookie).not.toMatch(/; Secure\b/);
     }
     expect((await browser.get('/api/me')).body.person).toMatchObject({ email: 'editor@railway.example' });
+  });
+
+  test('at an https address sets cookies that go over https only', async () => {
+    const fresh = await accountApp();
+    const settings = { ...fresh.frame.settings, publicUrl: 'https://quadrille.test' };
+    const origins = [settings.publicUrl];
+    const accounts = createAccounts({ ...fresh.frame, settings, origins, password: fresh.hash });
+    const app = createApp({
+      frame: { ...fresh.frame, settings, accounts },
+      services: standIns(ACCOUNT_SERVICES),
+      origins,
+      behindProxy: true,
+      pages: noPages,
+      securityHeaders: true,
+    });
+    const body = { email: 'editor@railway.example', password: PASSWORD };
+    const answer = await request(app).post('/api/auth/sign-in/email').set('Origin', settings.publicUrl).send(body);
+    const cookies = answer.get('Set-Cookie') ?? [];
+    expect(cookies.map((cookie) => cookie.split('=')[0]).sort()).toEqual([
+      '__Host-quadrille.browser',
+      '__Secure-quadrille.session_token',
+    ]);
+    for (const cookie of cookies) expect(cookie).toMatch(/; Secure\b/);
+    const carried = cookies.map((cookie) => cookie.split(';')[0]).join('; ');
+    const me = await request(app).get('/api/me').set('Cookie', carried);
+    expect(me.body.person).toMatchObject({ role: 'editor' });
   });
 
   test('answers a wrong password and an address of nobody alike, and works as hard for both', async () => {
