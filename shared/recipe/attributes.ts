@@ -11,12 +11,12 @@ export type Attributes = ReadonlyMap<string, AttributeText>;
 
 const LONGEST_TEXT = 500;
 
-/** Checks the attributes of an element against the table of elements. */
-export function readAttributes(block: ElementBlock, problems: Problems): Attributes {
+/** Checks the attributes of an element against the table of elements. `isTold`: that it comes later is said already. */
+export function readAttributes(block: ElementBlock, problems: Problems, isTold = false): Attributes {
   const read = new Map<string, AttributeText>();
   if (!isElementName(block.name)) return read;
   const row = ELEMENTS[block.name];
-  if (row.later) problems.error('not-available-yet', block.nameSpan, { what: `<${block.name}>` });
+  if (row.later && !isTold) problems.error('not-available-yet', block.nameSpan, { what: `<${block.name}>` });
   for (const attribute of block.attributes) {
     const { name, nameSpan } = attribute;
     const known = Object.hasOwn(row.attributes, name) ? row.attributes[name] : undefined;

@@ -33,7 +33,12 @@ interface Writer {
   readonly values: ValueLink[];
   readonly cautions: { readonly kind: string; readonly span: Span }[];
   readonly elements: ElementBlock[];
+  /** Nodes and characters of addresses so far: a few signs may stand for a large table. */
+  size: number;
 }
+
+/** What a page may come to; the largest of honest pages has a tenth of it. Common practice, no source. */
+const MOST_SIZE = 400_000;
 
 /** Writes the page as data: only tags and properties of a fixed list, links that may be followed, and the recipe's own elements. */
 export function writeBody(page: readonly PageNode[], problems: Problems): Body {
@@ -46,15 +51,24 @@ export function writeBody(page: readonly PageNode[], problems: Problems): Body {
     values: [],
     cautions: [],
     elements: [],
+    size: 0,
   };
   const nodes = writeNodes(writer, page);
   for (const { id, span } of writer.inPage) {
     if (!writer.ids.has(id)) problems.error('link-target-missing', span, { id, known: writer.ids.all() });
   }
-  return { ...writer, nodes };
+  if (writer.size > MOST_SIZE) problems.error('page-too-large', pageSpan(page));
+  const { headings, links, values, cautions, elements } = writer;
+  return { nodes, headings, links, values, cautions, elements };
+}
+
+function pageSpan(page: readonly PageNode[]): Span {
+  const first = page.find((node) => node.kind === 'tag' && node.span !== null);
+  return (first?.kind === 'tag' && first.span) || { start: 0, end: 0 };
 }
 
 function writeNodes(writer: Writer, nodes: readonly PageNode[]): readonly BodyNode[] {
+  if (writer.size > MOST_SIZE) return [];
   return nodes.flatMap((node) => writeNode(writer, node));
 }
 
@@ -73,6 +87,9 @@ type TagNode = Extract<PageNode, { readonly kind: 'tag' }>;
 
 function writeTag(writer: Writer, node: TagNode): readonly BodyNode[] {
   const { tagName, span } = node;
+  const href = node.properties.href;
+  writer.size += 1 + (typeof href === 'string' ? href.length : 0);
+  if (writer.size > MOST_SIZE) return [];
   // KaTeX wraps the maths in `semantics` and repeats its source in an annotation.
   if (tagName === 'semantics') return writeNodes(writer, node.children.slice(0, 1));
   if (tagName === 'img') {
@@ -161,9 +178,14 @@ function writeElement(writer: Writer, block: ElementBlock): readonly BodyNode[] 
   }
 }
 
-/** Drawings are read by a later release; what they hold is checked against the table alone. */
+/** A later release draws it; what it holds is checked against the table alone. */
 function noElement(block: ElementBlock, problems: Problems): readonly BodyNode[] {
   readAttributes(block, problems);
+  for (const child of block.elements) {
+    const { inside } = isElementName(child.name) ? ELEMENTS[child.name] : { inside: block.name };
+    if (inside === block.name) readAttributes(child, problems, true);
+    else problems.error('misplaced-element', child.nameSpan, { name: child.name, inside });
+  }
   return [];
 }
 

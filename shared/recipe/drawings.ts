@@ -6,14 +6,14 @@ export function drawingsOf(elements: readonly ElementBlock[]): readonly DrawingM
   return elements
     .filter((element) => element.name === 'Drawing')
     .map((element) => {
-      const { id = '', title = '', calculator } = textsIn(element);
+      const { id = '', title = '', ...rest } = textsIn(element);
       const parts = element.elements
         .filter((child) => child.name !== 'Wire')
         .map((child) => ({ element: child.name, ...textsIn(child) }));
       return {
         id,
         title,
-        ...(calculator === undefined ? {} : { calculator }),
+        ...('calculator' in rest ? { calculator: rest.calculator } : {}),
         parts,
         wires: element.elements.filter((child) => child.name === 'Wire').map(textsIn),
       };

@@ -28,10 +28,11 @@ export function readPage(text: string, readMdx: MdxReader): PageRead {
 }
 
 /**
- * Gives the page after a change that lies inside one attribute of an element inside a calculator: its structure is the
+ * Gives the page again where nothing has changed, and after a change that lies inside one attribute of an element inside a calculator: its structure is the
  * same, only places move. Null for any other change, and where the new value could end the attribute or hold an entity.
  */
 export function rereadPage(before: string, after: string, page: PageRead): PageRead | null {
+  if (before === after) return page;
   if (page.body === null || after.length > LIMITS.characters) return null;
   const edit = editBetween(before, after);
   const attribute = attributeAround(page.elements, edit);
