@@ -93,9 +93,9 @@ async function factsTogether(db: Db, starters: readonly Starter[]): Promise<Comp
   return { ...facts, recipes: Object.fromEntries(starters.map(({ text }) => [frontKey(text, 'slug'), [1]])) };
 }
 
-/** Clean is stricter than for a team's own recipes: a warning stops a supplied one too, but for what cannot be looked up yet. */
+/** Warnings may stand: a recipe about a fault shows that fault at its own values. */
 function firstProblem({ document, diagnostics, checks }: Omit<Compiled, 'preview'>): string | null {
-  const problem = diagnostics.find((d) => d.code !== 'not-checked-here');
+  const problem = diagnostics.find((d) => d.severity === 'error');
   if (problem !== undefined) {
     return `line ${problem.start.line}, column ${problem.start.column}: ${problem.message}`;
   }
