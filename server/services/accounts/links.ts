@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto';
 import { and, eq, gt, isNull } from 'drizzle-orm';
-import type { Failure } from '#api';
+import { type Failure, LINK_PATHS } from '#api';
 import type { Db } from '../../database/open.ts';
 import { link } from '../../database/schema.ts';
 import type { Context } from '../../http/context.ts';
@@ -10,9 +10,9 @@ export type LinkKind = LinkRow['kind'];
 
 /** Where each kind of link leads; the token stands in the fragment, so that it reaches no log. */
 const PATHS = {
-  'set-up': '/setup',
-  invitation: '/invitation',
-  password: '/password',
+  'set-up': LINK_PATHS.setUp,
+  invitation: LINK_PATHS.invitation,
+  password: LINK_PATHS.password,
 } as const satisfies Record<LinkKind, string>;
 
 export interface NewLink {
