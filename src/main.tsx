@@ -1,5 +1,6 @@
 import { setNonce } from 'get-nonce';
 import { createRoot } from 'react-dom/client';
+import { config } from 'zod/v4/core';
 import { App } from './app/app.tsx';
 import { openPreferences } from './lib/preferences.ts';
 import './ui/style.css';
@@ -7,6 +8,8 @@ import './ui/style.css';
 // Dialogs add a style element of their own; the policy takes it by this nonce.
 const nonce = document.querySelector('meta[name="csp-nonce"]')?.getAttribute('content');
 if (nonce) setNonce(nonce);
+// Without this every first schema of zod tries `new Function`, which the policy reports. Set before any page's chunk brings schemas.
+config({ jitless: true });
 openPreferences(null);
 
 const root = document.getElementById('root');

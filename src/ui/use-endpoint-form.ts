@@ -1,13 +1,10 @@
 import { zodResolver } from '@hookform/resolvers/zod';
 import { type FormEvent, useState } from 'react';
 import { type DefaultValues, type FieldErrors, type FieldValues, type Path, useForm } from 'react-hook-form';
-import * as z from 'zod';
+import type * as z from 'zod';
 import type { FieldError } from '#api';
 import type { Result } from '#text';
 import { announce } from './announce.tsx';
-
-// Without this zod tries `new Function` once, which the Content-Security-Policy reports.
-z.config({ jitless: true });
 
 /** Why a form was not taken: one sentence, and what is wrong with single fields. The client's failures have this form. */
 export interface Refusal {
@@ -52,7 +49,8 @@ export function useEndpointForm<Input extends FieldValues, Output extends FieldV
 
   const refuse = (failure: F) => {
     const known = failure.fields.filter((error) => error.field in form.getValues());
-    setRefusal(failure);
+    // What stands by a field need not stand by the button as well.
+    setRefusal(known.length > 0 ? null : failure);
     setServerErrors(Object.fromEntries(known.map((error) => [error.field, error.message])));
     settings.onRefused?.(failure);
     announce(failure.message, 'assertive');

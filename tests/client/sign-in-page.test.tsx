@@ -53,6 +53,8 @@ async function signIn(user: ReturnType<typeof userEvent.setup>) {
   await user.click(screen.getByRole('button', { name: 'Sign in' }));
 }
 
+const PAIR = 'This address and this password do not belong together.';
+
 describe('the sign-in page', () => {
   test('signs in and opens the page that was wanted', async () => {
     const { heard, router, user } = open({ to: '/recipes/rail-splitter?version=2' });
@@ -65,10 +67,16 @@ describe('the sign-in page', () => {
     });
   });
 
-  test('says that the pair is wrong without saying which half', async () => {
-    const { user } = open({ signIn: { status: 401, body: { code: 'not-signed-in', title: 'Sign in first' } } });
+  test('says once what the server says about the pair, by its field, and goes there', async () => {
+    const { user } = open({
+      signIn: {
+        status: 400,
+        body: { code: 'invalid', title: 'x', detail: PAIR, fields: [{ field: 'password', message: PAIR }] },
+      },
+    });
     await signIn(user);
-    expect(await screen.findByText('This e-mail and this password do not belong together.')).toBeTruthy();
+    expect(await screen.findAllByText(PAIR)).toHaveLength(1);
+    expect(document.activeElement).toBe(screen.getByLabelText('Password'));
   });
 
   test('says how long to wait, and does not send before', async () => {

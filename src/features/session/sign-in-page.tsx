@@ -3,9 +3,7 @@ import { useEffect, useState } from 'react';
 import { Link, Navigate, useLocation, useNavigate } from 'react-router-dom';
 import * as z from 'zod';
 import { email } from '#api';
-import { fail, type Result } from '#text';
 import { authRequest } from '../../lib/client.ts';
-import type { ClientFailure } from '../../lib/failure.ts';
 import { waitText } from '../../lib/locale.ts';
 import { paths, wantedPath } from '../../lib/paths.ts';
 import { tellNews } from '../../lib/server-news.ts';
@@ -74,7 +72,7 @@ function SignInForm() {
   const form = useEndpointForm({
     schema: signInBody,
     defaultValues: { email: '', password: '' },
-    send: async (values) => inOurWords(await authRequest('sign-in/email', values)),
+    send: (values) => authRequest('sign-in/email', values),
     onRefused: (failure) => {
       if (failure.kind === 'refused') wait.start(failure.problem.retryAfterSeconds ?? 0);
     },
@@ -117,12 +115,6 @@ function SignInForm() {
       </BlockRow>
     </form>
   );
-}
-
-/** The answer to a wrong pair says nothing about which of the two was wrong. */
-function inOurWords(sent: Result<unknown, ClientFailure>): Result<unknown, ClientFailure> {
-  if (sent.ok || sent.error.kind !== 'refused' || sent.error.status !== 401) return sent;
-  return fail({ ...sent.error, message: 'This e-mail and this password do not belong together.' });
 }
 
 /** Seconds left of a wait. */

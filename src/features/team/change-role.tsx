@@ -31,7 +31,7 @@ export function ChangeRole({ person, onClose }: { person: Person; onClose: () =>
     >
       <form noValidate onSubmit={form.onSubmit}>
         <SelectField label="Role" options={ROLE_OPTIONS} {...form.field('role')} />
-        {form.refusal !== null && form.refusal.fields.length === 0 && (
+        {form.refusal !== null && (
           <div className="mt-3">
             <Failure lead="Not changed.">{form.refusal.message}</Failure>
           </div>

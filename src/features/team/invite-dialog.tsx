@@ -32,9 +32,7 @@ export function InviteDialog({ onClose, firstRole = 'reader' }: { onClose: () =>
       <form noValidate onSubmit={form.onSubmit} className="grid gap-3">
         <TextField label="Work e-mail" type="email" autoComplete="off" {...form.field('email')} />
         <SelectField label="Role" options={ROLE_OPTIONS} {...form.field('role')} />
-        {form.refusal !== null && form.refusal.fields.length === 0 && (
-          <Failure lead="Not invited.">{form.refusal.message}</Failure>
-        )}
+        {form.refusal !== null && <Failure lead="Not invited.">{form.refusal.message}</Failure>}
         {form.mending !== null && <p className="field-error">{form.mending}</p>}
         <DialogActions>
           <Button kind="main" type="submit" acting="Inviting" isActing={form.isSending}>

@@ -129,9 +129,7 @@ function SettingsForm({ settings }: { settings: TeamSettings }) {
         <TextArea label="Purposes, one a line" rows={8} {...form.field('purposes')} />
         <TextArea label="Topics, one a line" rows={8} {...form.field('topics')} />
       </div>
-      {form.refusal !== null && form.refusal.fields.length === 0 && (
-        <Failure lead="Not kept.">{form.refusal.message}</Failure>
-      )}
+      {form.refusal !== null && <Failure lead="Not kept.">{form.refusal.message}</Failure>}
       {form.mending !== null && <p className="field-error">{form.mending}</p>}
       <div className="flex items-center gap-4">
         <Button kind="main" type="submit" acting="Keeping" isActing={form.isSending}>
