@@ -26,7 +26,7 @@ export function readAttributes(block: ElementBlock, problems: Problems, isTold =
     } else if (read.has(name)) problems.error('duplicate-attribute', nameSpan, { name });
     else if (isFit(attribute, known, row.later === true, problems)) read.set(name, attribute);
   }
-  const given = new Set(block.attributes.map((attribute) => attribute.name));
+  const given = new Set([...block.attributes.map((attribute) => attribute.name), ...block.refused]);
   const missing = Object.keys(row.attributes).filter((name) => row.attributes[name]?.required && !given.has(name));
   if (missing.length > 0) problems.error('missing-attribute', block.nameSpan, { element: block.name, names: missing });
   return read;

@@ -11,6 +11,8 @@ export interface ElementBlock {
   readonly span: Span;
   readonly nameSpan: Span;
   readonly attributes: readonly AttributeText[];
+  /** Names of attributes that stand there but were refused: they are not missing. */
+  readonly refused: readonly string[];
   /** The elements directly inside. */
   readonly elements: readonly ElementBlock[];
   /** Everything inside; empty where the MDX parser did not get that far. */
@@ -111,16 +113,18 @@ function readElement(node: TreeNode, place: Place): PageNode | null {
     return null;
   }
   const attributes: AttributeText[] = [];
+  const refused: string[] = [];
   for (const attribute of node.attributes ?? []) {
     const read = readAttribute(attribute, place);
     if (read !== null) attributes.push(read);
+    else refused.push(attribute.name ?? '');
   }
   // A line that holds an element alone is no sentence, though its node may be one of text.
   const stands = node.type === 'mdxJsxTextElement' ? 'text' : place.stands;
   const inner: Place = { ...place, stands: ELEMENTS[name].holds === 'prose' ? 'nested' : 'page' };
   const content = readChildren(node, inner);
   const elements = elementsIn(content);
-  return { kind: 'element', element: { name, span: at, nameSpan, attributes, elements, content, stands } };
+  return { kind: 'element', element: { name, span: at, nameSpan, attributes, refused, elements, content, stands } };
 }
 
 /** Elements directly inside, also those that share a line and so stand in a paragraph. */
@@ -180,7 +184,7 @@ export function blocksFromTags(tags: readonly Tag[]): readonly ElementBlock[] {
 }
 
 function blockOf({ name, nameSpan, attributes }: Tag, elements: readonly ElementBlock[], at: Span): ElementBlock {
-  return { name, nameSpan, attributes, elements, content: [], stands: 'page', span: at };
+  return { name, nameSpan, attributes, refused: [], elements, content: [], stands: 'page', span: at };
 }
 
 /** The element that a misspelt name most likely means; '' where none is near. */

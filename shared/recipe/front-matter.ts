@@ -74,7 +74,9 @@ function readYaml(yaml: string, start: number, problems: Problems): Map<Key, Val
     const document = parseDocument(yaml, { schema: 'core', prettyErrors: false, logLevel: 'silent', merge: false });
     contents = document.contents;
     for (const { message, pos, code } of document.errors) {
-      const at = span(start + pos[0], start + Math.max(pos[1], pos[0] + 1));
+      // The package marks one character; the word that begins there is clearer.
+      const word = /^[\w-]+/.exec(yaml.slice(pos[0]))?.[0].length ?? 1;
+      const at = span(start + pos[0], start + Math.max(pos[1], pos[0] + word));
       problems.error(code === 'DUPLICATE_KEY' ? 'front-matter-key-twice' : 'front-matter-syntax', at, {
         reason: message,
       });
