@@ -29,10 +29,13 @@ export function createCompilePool(script: URL, limitMs: number = COMPILE_LIMIT_M
     execArgv: script.pathname.endsWith('.ts') ? ['--import', 'tsx'] : [],
   });
   const kept = new Map<string, Promise<Compiled>>();
+  // The limit is for texts, not for starting threads on a busy machine: the first texts wait until the threads have compiled an empty one.
+  const warm = Promise.allSettled(Array.from({ length: THREADS }, () => pool.run({ text: '', facts: {} })));
   const turns = createTurns(THREADS);
 
   async function compileNow(text: string, facts: CompileFacts): Promise<Compiled> {
     await turns.take();
+    await warm;
     const stop = new AbortController();
     const timer = setTimeout(() => stop.abort(), limitMs);
     try {

@@ -84,10 +84,10 @@ function logger(level: string) {
 
 /** Says where the program is, and stops it in good order when the system asks. */
 function announce(running: Running): void {
-  process.stdout.write(`Quadrille is at ${running.url}\n`);
-  if (running.setUpLink !== null) {
-    process.stdout.write(`Make the first admin here, within 24 hours: ${running.setUpLink}\n`);
-  }
+  const link = running.setUpLink;
+  const setUp = link === null ? '' : `Make the first admin here, within 24 hours: ${link}\n`;
+  // In one piece, so that whoever reads the address from a pipe has the link with it.
+  process.stdout.write(`Quadrille is at ${running.url}\n${setUp}`);
   let stopping = false;
   for (const signal of ['SIGTERM', 'SIGINT'] as const) {
     process.on(signal, () => {
