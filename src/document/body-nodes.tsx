@@ -20,7 +20,7 @@ export function drawBody(body: readonly BodyNode[], components: BodyComponents, 
   const draw = (node: BodyNode, key: number): ReactNode => {
     if (node.type === 'text') return node.value;
     const attributes = { ...attributesOf(node), ...(withPlaces ? placeOf(node) : {}) };
-    const children = node.children.map(draw);
+    const children = (TABLE_PARTS.has(node.tagName) ? node.children.filter(isElement) : node.children).map(draw);
     const component = Object.hasOwn(components, node.tagName) ? components[node.tagName] : undefined;
     // Spread, not handed over as a list: the parts of a page never change places.
     return component
@@ -28,6 +28,13 @@ export function drawBody(body: readonly BodyNode[], components: BodyComponents, 
       : createElement(node.tagName, { ...attributes, key }, ...children);
   };
   return body.map(draw);
+}
+
+/** Line ends between rows and cells are no text of theirs. */
+const TABLE_PARTS: ReadonlySet<string> = new Set(['table', 'thead', 'tbody', 'tr']);
+
+function isElement(node: BodyNode): boolean {
+  return node.type === 'element';
 }
 
 function attributesOf({ properties }: BodyElement): BodyAttributes {

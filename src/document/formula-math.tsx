@@ -22,7 +22,7 @@ function drawn(layout: Layout): ReactElement {
     case 'name':
       return drawnName(layout.name);
     case 'value':
-      return element('mtext', { class: 'math-value' }, layout.text);
+      return element('mtext', { className: 'math-value' }, layout.text);
     case 'operator':
       return element('mo', {}, layout.text);
     case 'row':

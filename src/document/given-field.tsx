@@ -2,6 +2,7 @@ import { type FocusEvent, type KeyboardEvent, useId, useRef, useState } from 're
 import { fieldMessage, type Given, type InputField } from '#calculator';
 import { endsOf, hasTwoEnds, stepText, withEnd } from './field-text.ts';
 import { Letter } from './letter.tsx';
+import { useLingering } from './use-lingering.ts';
 
 export interface GivenFieldProps {
   readonly given: Given;
@@ -21,7 +22,7 @@ export function GivenField(props: GivenFieldProps) {
   const root = useRef<HTMLDivElement>(null);
   const atFocus = useRef<string | null>(null);
   const refusal = field.state === 'refused' ? fieldMessage(field.problem) : null;
-  const below = noteFor(props, isFocused);
+  const below = useLingering(noteFor(props, isFocused));
   const ids = [refusal ? `${id}-error` : '', below === null ? '' : `${id}-note`].filter(Boolean).join(' ') || undefined;
   const enter = () => {
     if (isFocused) return;
