@@ -353,9 +353,6 @@ Keep it short.
 
   test('numbers its sections and keeps cautions, notes, maths, tables and footnotes', () => {
     open(document());
-    console.log(window.document.body.innerHTML);
-    return;
-    open(document());
     const headings = screen.getAllByRole('heading', { level: 2 }).map((heading) => heading.textContent);
     expect(headings.slice(0, 2)).toEqual(['1 First', '2 Second']);
     expect(screen.getByRole('heading', { level: 3, name: '1.1 A part' })).toBeTruthy();
