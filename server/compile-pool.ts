@@ -30,7 +30,9 @@ export function createCompilePool(script: URL, limitMs: number = COMPILE_LIMIT_M
   });
   const kept = new Map<string, Promise<Compiled>>();
   // The limit is for texts, not for starting threads on a busy machine: the first texts wait until the threads have compiled an empty one.
-  const warm = Promise.allSettled(Array.from({ length: THREADS }, () => pool.run({ text: '', facts: {} })));
+  const warmUp = (threads: number) =>
+    Promise.allSettled(Array.from({ length: threads }, () => pool.run({ text: '', facts: {} })));
+  let warm = warmUp(THREADS);
   const turns = createTurns(THREADS);
 
   async function compileNow(text: string, facts: CompileFacts): Promise<Compiled> {
@@ -41,7 +43,10 @@ export function createCompilePool(script: URL, limitMs: number = COMPILE_LIMIT_M
     try {
       return await pool.run({ text, facts }, { signal: stop.signal });
     } catch (error) {
-      if (stop.signal.aborted || isOutOfMemory(error)) return tooSlow(limitMs);
+      if (stop.signal.aborted || isOutOfMemory(error)) {
+        warm = warmUp(1);
+        return tooSlow(limitMs);
+      }
       throw error;
     } finally {
       clearTimeout(timer);

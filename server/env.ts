@@ -1,7 +1,8 @@
 import { resolve } from 'node:path';
 import * as z from 'zod';
 
-const LOOPBACK = ['127.0.0.1', 'localhost', '::1'];
+/** Names of this machine for itself; the first is the one to be told. */
+const LOOPBACK = ['localhost', '127.0.0.1', '::1'] as const;
 
 const variables = z.object({
   PORT: z
@@ -58,7 +59,7 @@ export function readEnv(source: Readonly<Record<string, string | undefined>>): E
     throw new StartError(`Unexpected ${name}${value}, expected ${EXPECTED[name]}.`);
   }
   const { PORT: port, HOST: host, PUBLIC_URL: url } = parsed.data;
-  if (url === undefined && !LOOPBACK.includes(host)) {
+  if (url === undefined && !LOOPBACK.some((name) => name === host)) {
     throw new StartError(
       `HOST is ${host}, but an address other machines can reach needs PUBLIC_URL: ${EXPECTED.PUBLIC_URL}.`,
     );
@@ -78,9 +79,10 @@ function addresses(url: string | undefined, port: number): Pick<Env, 'publicUrl'
     const { origin } = new URL(url);
     return { publicUrl: origin, origins: [origin], behindProxy: true };
   }
+  const origins = LOOPBACK.map((name) => `http://${name.includes(':') ? `[${name}]` : name}:${port}`);
   return {
-    publicUrl: `http://localhost:${port}`,
-    origins: LOOPBACK.map((name) => `http://${name.includes(':') ? `[${name}]` : name}:${port}`),
+    publicUrl: `http://${LOOPBACK[0]}:${port}`,
+    origins,
     behindProxy: false,
   };
 }
