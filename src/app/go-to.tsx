@@ -1,10 +1,11 @@
 import { useQuery } from '@tanstack/react-query';
-import { type KeyboardEvent, useEffect, useId, useRef, useState } from 'react';
+import { type KeyboardEvent, useId, useRef, useState } from 'react';
 import { useNavigate } from 'react-router-dom';
 import type { RecipeRow } from '#api';
 import { paths } from '../lib/paths.ts';
 import { usePreferences } from '../lib/preferences.ts';
 import { reading } from '../lib/query-client.ts';
+import { useSingleKey } from './single-keys.tsx';
 
 const MOST = 8;
 
@@ -17,7 +18,8 @@ export function GoTo() {
   const navigate = useNavigate();
   const listId = useId();
   const recipes = useQuery({ ...reading('recipes.list', {}), enabled: isOpen });
-  useSlashKey(box);
+  const { singleKeys } = usePreferences();
+  useSingleKey('/', () => box.current?.focus());
 
   const found = matching(recipes.data?.recipes ?? [], typed);
   const isListed = isOpen && typed.trim() !== '';
@@ -68,7 +70,7 @@ export function GoTo() {
         onKeyDown={onKeyDown}
       />
       <span aria-hidden="true" className="pointer-events-none absolute top-1 right-0.5">
-        <kbd>/</kbd>
+        {singleKeys && <kbd>/</kbd>}
       </span>
       <div
         id={listId}
@@ -116,22 +118,4 @@ export function matching(recipes: readonly RecipeRow[], typed: string): readonly
   const begins = named.filter(({ names }) => names.some((name) => name.startsWith(words)));
   const holds = named.filter((each) => !begins.includes(each) && each.names.some((name) => name.includes(words)));
   return [...begins, ...holds].slice(0, MOST).map(({ recipe }) => recipe);
-}
-
-function useSlashKey(box: { readonly current: HTMLInputElement | null }): void {
-  const { singleKeys } = usePreferences();
-  useEffect(() => {
-    if (!singleKeys) return;
-    const onKey = (event: globalThis.KeyboardEvent) => {
-      if (event.key !== '/' || event.ctrlKey || event.metaKey || event.altKey || isTypedInto(event.target)) return;
-      event.preventDefault();
-      box.current?.focus();
-    };
-    window.addEventListener('keydown', onKey);
-    return () => window.removeEventListener('keydown', onKey);
-  }, [singleKeys, box]);
-}
-
-export function isTypedInto(target: EventTarget | null): boolean {
-  return target instanceof HTMLElement && (target.isContentEditable || target.matches('input, textarea, select'));
 }

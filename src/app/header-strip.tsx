@@ -1,34 +1,19 @@
+import { lazy, Suspense, useState } from 'react';
 import { Link, NavLink } from 'react-router-dom';
 import { paths } from '../lib/paths.ts';
-import { useMay, useMe } from '../lib/session.ts';
-import { Button } from '../ui/button.tsx';
+import { useMe } from '../lib/session.ts';
+import { buttonClass } from '../ui/button.tsx';
 import { QuadrilleMark } from '../ui/marks.tsx';
-import { Menu, MenuLink, MenuRule } from '../ui/menu.tsx';
 import { GoTo } from './go-to.tsx';
-import { PersonActs, useSignOut } from './person-menu.tsx';
+import { PlaceLabel } from './place-label.tsx';
+import { type Place, usePlaces } from './places.ts';
 
-interface Place {
-  readonly to: string;
-  readonly label: string;
-  readonly count?: number;
-}
-
-function usePlaces(): readonly Place[] {
-  const { reviewsWaiting } = useMe();
-  const seesReviews = useMay('see reviews');
-  const seesTeam = useMay('see the team');
-  return [
-    { to: paths.recipes(), label: 'Recipes' },
-    { to: paths.designs(), label: 'My designs' },
-    ...(seesReviews ? [{ to: paths.reviews(), label: 'Reviews', count: reviewsWaiting }] : []),
-    ...(seesTeam ? [{ to: paths.team(), label: 'Team' }] : []),
-  ];
-}
+const loadMenu = () => import('./strip-menu.tsx');
+const StripMenu = lazy(async () => ({ default: (await loadMenu()).StripMenu }));
 
 export function HeaderStrip() {
   const places = usePlaces();
   const { person } = useMe();
-  const signingOut = useSignOut();
   return (
     <header className="strip">
       <Link className="mark" to={paths.recipes()}>
@@ -47,44 +32,46 @@ export function HeaderStrip() {
           <GoTo />
         </span>
         <span className="wide-only">
-          <Menu
-            trigger={
-              <button type="button" className="min-h-9 text-ink-2 underline decoration-transparent hover:text-ink">
-                {person?.name}
-              </button>
-            }
-          >
-            <PersonActs onSignOut={signingOut.begin} />
-          </Menu>
+          <MenuOnDemand label={person?.name ?? ''} className="min-h-9 text-ink-2 hover:text-ink" places={[]} />
         </span>
         <span className="narrow-only">
-          <Menu trigger={<Button small>Menu</Button>}>
-            {places.map((place) => (
-              <MenuLink key={place.to}>
-                <NavLink to={place.to}>
-                  <PlaceLabel place={place} />
-                </NavLink>
-              </MenuLink>
-            ))}
-            <MenuRule />
-            <PersonActs onSignOut={signingOut.begin} />
-          </Menu>
+          <MenuOnDemand label="Menu" className={buttonClass('plain', true)} places={places} />
         </span>
       </div>
-      {signingOut.question}
     </header>
   );
 }
 
-function PlaceLabel({ place }: { place: Place }) {
-  if (place.count === undefined || place.count === 0) return place.label;
+interface MenuOnDemandProps {
+  readonly label: string;
+  readonly className: string;
+  readonly places: readonly Place[];
+}
+
+/** A plain button until it is pressed; only then is the menu loaded, so that no page waits for it. */
+function MenuOnDemand({ label, className, places }: MenuOnDemandProps) {
+  const [isWanted, setWanted] = useState(false);
+  const plain = (
+    <button
+      type="button"
+      className={className}
+      aria-haspopup="menu"
+      aria-expanded={false}
+      onPointerEnter={() => void loadMenu()}
+      onClick={() => setWanted(true)}
+    >
+      {label}
+    </button>
+  );
+  if (!isWanted) return plain;
+  const trigger = (
+    <button type="button" className={className}>
+      {label}
+    </button>
+  );
   return (
-    <>
-      {place.label}
-      <span className="lab">
-        {place.count}
-        <span className="sr-only"> waiting</span>
-      </span>
-    </>
+    <Suspense fallback={plain}>
+      <StripMenu trigger={trigger} places={places} />
+    </Suspense>
   );
 }

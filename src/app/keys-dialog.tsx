@@ -1,7 +1,4 @@
-import { useEffect, useState } from 'react';
-import { usePreferences } from '../lib/preferences.ts';
 import { Dialog } from '../ui/dialog.tsx';
-import { isTypedInto } from './go-to.tsx';
 
 const KEYS = [
   ['/', 'go to a recipe by number or name'],
@@ -13,20 +10,9 @@ const KEYS = [
   ['Esc', 'close what is open; the harmless answer to a question'],
 ] as const;
 
-/** `?` lists the keys. */
-export function KeysDialog() {
-  const { singleKeys } = usePreferences();
-  const [isOpen, setOpen] = useState(false);
-  useEffect(() => {
-    if (!singleKeys) return;
-    const onKey = (event: KeyboardEvent) => {
-      if (event.key === '?' && !event.ctrlKey && !event.metaKey && !isTypedInto(event.target)) setOpen(true);
-    };
-    window.addEventListener('keydown', onKey);
-    return () => window.removeEventListener('keydown', onKey);
-  }, [singleKeys]);
+export function KeysDialog({ onClose }: { onClose: () => void }) {
   return (
-    <Dialog title="Keys" isOpen={isOpen} onClose={() => setOpen(false)}>
+    <Dialog title="Keys" isOpen onClose={onClose}>
       <dl className="grid grid-cols-[64px_1fr] gap-y-2">
         {KEYS.map(([key, act]) => (
           <div key={act} className="contents">

@@ -3,9 +3,9 @@ import { paths } from '../lib/paths.ts';
 import { useServerNews } from '../lib/server-news.ts';
 import { Button } from '../ui/button.tsx';
 import { HeaderStrip } from './header-strip.tsx';
-import { KeysDialog } from './keys-dialog.tsx';
 import { Notices } from './notices.tsx';
 import { RouteChange } from './route-change.tsx';
+import { KeysHelp } from './single-keys.tsx';
 
 /** Header strip, sheet, and what every page shares. */
 export function Shell() {
@@ -18,7 +18,7 @@ export function Shell() {
       <ServerNewsBar />
       <Notices />
       <RouteChange />
-      <KeysDialog />
+      <KeysHelp />
       <main id="sheet" className="page" tabIndex={-1}>
         <Outlet />
       </main>

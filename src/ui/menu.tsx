@@ -6,12 +6,14 @@ export interface MenuProps {
   readonly trigger: ReactElement;
   readonly children: ReactNode;
   readonly align?: 'start' | 'end';
+  /** Open from the first drawing: for a menu that is loaded when its button is pressed. */
+  readonly startsOpen?: boolean;
 }
 
 /** Its items stand beside the trigger in the page's order, so they stay inside the landmark they belong to. */
-export function Menu({ trigger, children, align = 'end' }: MenuProps) {
+export function Menu({ trigger, children, align = 'end', startsOpen = false }: MenuProps) {
   return (
-    <Radix.Root modal={false}>
+    <Radix.Root modal={false} defaultOpen={startsOpen}>
       <Radix.Trigger asChild>{trigger}</Radix.Trigger>
       <Radix.Content align={align} sideOffset={6} collisionPadding={8} className="float min-w-48 py-1">
         {children}
