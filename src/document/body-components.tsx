@@ -86,7 +86,7 @@ function CalculatorPlace({ attributes }: BodyProps) {
   }
   return (
     <p className="calculator-place">
-      <a href={`#calculator-${id}`}>{state.linked.model.title}</a>: the calculator beside this page.
+      <a href={`#calculator-${id}`}>{state.linked.model.title}</a>: the calculator of this page.
     </p>
   );
 }

@@ -1,7 +1,7 @@
 import { describeOutcome, type LimitOutcome } from '#calculator';
 import { buttonClass } from '../ui/button.tsx';
 import { LimitMark } from '../ui/marks.tsx';
-import { brokenUnder, keyResult } from './key-result.ts';
+import { isGoodResult, keyResult } from './key-result.ts';
 import { Amount } from './result-rows.tsx';
 import type { CalculatorState } from './use-calculators.ts';
 
@@ -11,11 +11,9 @@ export function CalculatorBar({ state }: { state: CalculatorState }) {
   const key = keyResult(linked.model);
   const outcome = key && evaluation.outcomes[key.name];
   if (!key || !outcome) return null;
-  const broken = brokenUnder(evaluation, key.name);
-  const isGood = outcome.state === 'known' && broken.length === 0 && !state.isLastGood;
   return (
     <div className="calculator-bar">
-      <div className="calculator-bar-result" data-good={isGood ? '' : undefined}>
+      <div className="calculator-bar-result" data-good={isGoodResult(state, key.name) ? '' : undefined}>
         <span className="sr-only">{key.label}: </span>
         <Amount text={describeOutcome(outcome, key).text} />
         <LimitCount limits={evaluation.limits} />

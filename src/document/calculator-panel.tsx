@@ -5,7 +5,7 @@ import { copiedResults } from './copied-results.ts';
 import './document.css';
 import { GivenField } from './given-field.tsx';
 import { LimitRows } from './limit-rows.tsx';
-import { ResultRows } from './result-rows.tsx';
+import { KeyResultRow, ResultRows } from './result-rows.tsx';
 import { useSpokenResults } from './spoken-results.ts';
 import type { CalculatorState, CalculatorsState } from './use-calculators.ts';
 
@@ -66,8 +66,9 @@ function Panel({ calculators, state, heading, standing, actions }: PanelProps) {
       {state.isLastGood && (
         <p className="last-good">The results still stand on the last good numbers: a field needs a change.</p>
       )}
-      <ResultRows state={state} />
+      <KeyResultRow state={state} />
       <LimitRows state={state} onChange={(name, text) => calculators.change(model.id, name, text)} />
+      <ResultRows state={state} />
       <footer className="calculator-foot">
         {actions}
         <CopyButton text={copiedResults(state, heading)} label="Copy numbers" />

@@ -8,12 +8,15 @@ import {
   type Upstream,
 } from '#calculator';
 import type { RecipeDocument } from '#recipe';
+import { Letter } from './letter.tsx';
 import { TrueMark } from './true-mark.tsx';
 import { WideTable } from './wide-table.tsx';
 
 interface Ran {
   readonly example: ExampleModel;
   readonly run: ExampleRun;
+  /** Names of results, as against those of limits. */
+  readonly results: ReadonlySet<string>;
 }
 
 /** The worked examples, worked out again on this page: what they say, what came out, what they were checked against. */
@@ -26,7 +29,6 @@ export function ExamplesTable({ document }: { document: RecipeDocument }) {
       <table className="examples">
         <thead>
           <tr>
-            <th scope="col">Example</th>
             <th scope="col">Of</th>
             <th scope="col" className="number">
               Example says
@@ -37,17 +39,17 @@ export function ExamplesTable({ document }: { document: RecipeDocument }) {
             <th scope="col">Agreement</th>
           </tr>
         </thead>
-        <tbody>
-          {ran.map(({ example, run }) =>
-            run.rows.map((row, i) => (
-              <tr key={`${example.title} ${row.what}`} className={i === 0 ? 'example-first' : undefined}>
-                {i === 0 && (
-                  <th scope="row" rowSpan={run.rows.length}>
-                    {example.title}
-                    <small>Checked against: {document.front.sources[example.source] ?? example.source}</small>
-                  </th>
-                )}
-                <td>{row.what}</td>
+        {ran.map(({ example, run, results }) => (
+          <tbody key={`${example.title} ${example.span.start}`}>
+            <tr>
+              <th scope="rowgroup" colSpan={4} className="example-title">
+                {example.title}
+                <small>Checked against: {document.front.sources[example.source] ?? example.source}</small>
+              </th>
+            </tr>
+            {run.rows.map((row) => (
+              <tr key={row.what}>
+                <td>{results.has(row.what) ? <Letter name={row.what} /> : row.what}</td>
                 <td className="number">{row.expected}</td>
                 <td className="number">{row.got}</td>
                 <td>
@@ -55,9 +57,9 @@ export function ExamplesTable({ document }: { document: RecipeDocument }) {
                   {row.within !== '' && <small>within {row.within}</small>}
                 </td>
               </tr>
-            )),
-          )}
-        </tbody>
+            ))}
+          </tbody>
+        ))}
       </table>
     </WideTable>
   );
@@ -67,6 +69,10 @@ function runAll(document: RecipeDocument): readonly Ran[] {
   const linked = document.calculators.map(linkCalculator);
   const upstream: Upstream = Object.fromEntries(evaluateInOrder(linked, {}));
   return linked.flatMap((calculator) =>
-    calculator.model.examples.map((example) => ({ example, run: runExample(calculator, example, upstream) })),
+    calculator.model.examples.map((example) => ({
+      example,
+      run: runExample(calculator, example, upstream),
+      results: new Set(calculator.results.keys()),
+    })),
   );
 }

@@ -3,9 +3,10 @@ import type { Layout } from '#formula';
 import { assertNever } from '#text';
 import { letterParts } from './letter.tsx';
 
-/** A formula as MathML, with its text for those who do not see it. */
-export function FormulaMath({ layout, text }: { layout: Layout; text: string }) {
-  return element('math', { display: 'block', 'aria-label': text }, element('mrow', {}, drawn(layout)));
+/** A formula as MathML, `of =` before it, with its text for those who do not see it. */
+export function FormulaMath({ of, layout, text }: { of: string; layout: Layout; text: string }) {
+  const row = element('mrow', {}, drawnName(of), element('mo', {}, '='), drawn(layout));
+  return element('math', { display: 'block', 'aria-label': text }, row);
 }
 
 /** React draws MathML, but its types name no element of it. */

@@ -45,11 +45,8 @@ export function GivenField(props: GivenFieldProps) {
   const shared = { ...props, tied, id, putBack };
   return (
     <div ref={root} className="given" data-origin={field.origin} data-refused={refusal ? '' : undefined}>
-      <label className="given-label" htmlFor={id}>
-        {given.label}
-      </label>
-      <span className="given-letter">
-        <Letter name={given.name} />
+      <span className="given-label">
+        <label htmlFor={id}>{given.label}</label> <Letter name={given.name} />
       </span>
       <div className="given-entry">
         {given.options ? (

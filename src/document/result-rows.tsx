@@ -1,18 +1,29 @@
 import { type Described, describeOutcome, type Explanation, explainResult, type ResultModel } from '#calculator';
 import { Hint } from '../ui/hint.tsx';
 import { FormulaMath } from './formula-math.tsx';
-import { brokenUnder, keyResult } from './key-result.ts';
+import { brokenUnder, isGoodResult, keyResult } from './key-result.ts';
 import { Letter } from './letter.tsx';
 import type { CalculatorState } from './use-calculators.ts';
 
-/** Every result, the key result first and largest. Each opens to its formula, with the numbers put in. */
+/** The key result, largest of all. */
+export function KeyResultRow({ state }: { state: CalculatorState }) {
+  const key = keyResult(state.linked.model);
+  if (!key) return null;
+  return (
+    <dl className="results" data-last-good={state.isLastGood ? '' : undefined}>
+      <ResultRow state={state} result={key} isKey />
+    </dl>
+  );
+}
+
+/** The results beside the key result, in the author's order. Each opens to its formula, with the numbers put in. */
 export function ResultRows({ state }: { state: CalculatorState }) {
   const { model } = state.linked;
   const key = keyResult(model);
   const others = model.results.filter((result) => result !== key);
+  if (others.length === 0) return null;
   return (
     <dl className="results" data-last-good={state.isLastGood ? '' : undefined}>
-      {key && <ResultRow state={state} result={key} isKey />}
       {others.map((result) => (
         <ResultRow key={result.name} state={state} result={result} />
       ))}
@@ -26,7 +37,7 @@ function ResultRow({ state, result, isKey = false }: { state: CalculatorState; r
   const described = describeOutcome(outcome, result);
   const broken = brokenUnder(state.evaluation, result.name);
   const remark = remarkFor(described, broken);
-  const isGood = outcome.state === 'known' && broken.length === 0 && !state.isLastGood;
+  const isGood = isGoodResult(state, result.name);
   return (
     <div className={isKey ? 'result result-key' : 'result'} data-good={isGood ? '' : undefined}>
       <dt className="result-label">
@@ -58,26 +69,20 @@ function remarkFor(described: Described, broken: readonly string[]): string | nu
   return parts.length === 0 ? null : parts.join('; ');
 }
 
-/** A number with its unit in a lane of its own, so that decimal points of a column stand beneath each other. */
+/** Up to the last decimal point, and from there: decimal points of a column stand beneath each other, also those of ranges. */
+const LANES = /^(.*?\d)((?:\.\d+)?)(?:\u2009(\D[^…]*))?$/;
+
 export function Amount({ text }: { text: string }) {
-  const single = /^([−-]?[\d]+)((?:\.\d+)?)(?:\u2009(.+))?$/.exec(text);
-  if (single) {
-    const [, whole = '', part = '', unit = ''] = single;
-    return (
-      <span className="amount amount-lanes">
-        <span>{whole}</span>
-        <span>
-          {part}
-          {unit !== '' && <span className="unit">{`\u2009${unit}`}</span>}
-        </span>
-      </span>
-    );
-  }
-  const split = text.lastIndexOf('\u2009');
+  const lanes = /^[−\d]/.test(text) ? LANES.exec(text) : null;
+  if (!lanes) return <span className="amount">{text}</span>;
+  const [, whole = '', part = '', unit = ''] = lanes;
   return (
-    <span className="amount">
-      {split < 0 ? text : text.slice(0, split)}
-      {split >= 0 && <span className="unit">{text.slice(split)}</span>}
+    <span className="amount amount-lanes">
+      <span>{whole}</span>
+      <span>
+        {part}
+        {unit !== '' && <span className="unit">{`\u2009${unit}`}</span>}
+      </span>
     </span>
   );
 }
@@ -95,8 +100,16 @@ export function ExplanationNote({ explanation }: { explanation: Explanation | nu
   if (explanation === null) return <p>This result has no formula of its own.</p>;
   return (
     <div className="explanation">
-      <FormulaMath layout={explanation.formula} text={`${explanation.name} = ${explanation.formulaText}`} />
-      <FormulaMath layout={explanation.withNumbers} text={`with the numbers: ${explanation.withNumbersText}`} />
+      <FormulaMath
+        of={explanation.name}
+        layout={explanation.formula}
+        text={`${explanation.name} = ${explanation.formulaText}`}
+      />
+      <FormulaMath
+        of={explanation.name}
+        layout={explanation.withNumbers}
+        text={`with the numbers: ${explanation.withNumbersText}`}
+      />
       <p className="explanation-outcome">
         = {explanation.outcome.words}
         {explanation.atMiddle && <span className="note"> (the numbers above are at the middle of each range)</span>}

@@ -3,7 +3,8 @@ import type { RecipeRow } from '#api';
 import { FACET_NAMES, FACETS, type FacetName, facetValues, type Ticked } from './facets.ts';
 
 /** Values shown before "more". */
-const SHOWN = 6;
+const SHOWN = 5;
+const PHONE_PX = 760;
 
 export interface FacetListsProps {
   readonly all: readonly RecipeRow[];
@@ -15,8 +16,10 @@ export interface FacetListsProps {
 /** Four or five ruled columns of boxes with counts; what is left with none stays visible. */
 export function FacetLists({ all, found, ticked, onTick }: FacetListsProps) {
   const count = Object.values(ticked).flat().length;
+  // Folded on a phone, where the list would begin below the screen.
+  const [opensAtFirst] = useState(() => count > 0 || window.innerWidth > PHONE_PX);
   return (
-    <details className="facets" open={count > 0 || undefined}>
+    <details className="facets" open={opensAtFirst}>
       <summary>Topic, supply, state, caution, origin{count > 0 && <b>{` · ${count} ticked`}</b>}</summary>
       <div className="facet-columns">
         {FACET_NAMES.map((facet) => (

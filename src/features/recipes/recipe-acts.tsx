@@ -45,8 +45,8 @@ function ChangeAct({ page: { recipe, draft } }: { page: RecipePage }) {
   };
   return (
     <span>
-      <Button kind="text" acting="Starting a change" isActing={isActing} onClick={() => void start()}>
-        Change this recipe
+      <Button kind="text" isActing={isActing} onClick={() => void start()}>
+        {isActing ? 'Starting a change' : 'Change this recipe'}
       </Button>
       {refused !== null && <span className="field-error block">Not started. {refused}</span>}
     </span>

@@ -44,6 +44,7 @@ export function RecipeSheet({ page, kept }: { page: RecipePage; kept: KeptInputs
     return <AddedHeading document={document} at={at + 1} id={id} text={added[at]?.text ?? ''} />;
   };
   const [first] = calculators.list;
+  const isTouched = kept.standing.kind !== 'kept' || calculators.list.some((state) => state.typedOver > 0);
   return (
     <div className="recipe-page">
       <Sheet
@@ -93,7 +94,7 @@ export function RecipeSheet({ page, kept }: { page: RecipePage; kept: KeptInputs
                 calculators={calculators}
                 id={state.id}
                 heading={`${recipe.number} ${document.front.title}, version ${version.version}`}
-                standing={i === 0 ? <SaveLine standing={kept.standing} /> : undefined}
+                standing={i === 0 && isTouched ? <SaveLine standing={kept.standing} /> : undefined}
                 actions={i === 0 ? <KeepAct page={page} calculators={calculators} /> : undefined}
               />
             ))}

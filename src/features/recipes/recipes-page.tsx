@@ -1,5 +1,5 @@
 import { useQuery } from '@tanstack/react-query';
-import { type KeyboardEvent, useEffect, useRef, useState } from 'react';
+import { type KeyboardEvent, type ReactNode, useEffect, useRef, useState } from 'react';
 import { Link, useSearchParams } from 'react-router-dom';
 import type { RecipeRow } from '#api';
 import { paths } from '../../lib/paths.ts';
@@ -23,42 +23,44 @@ export function RecipesPage() {
   const recipes = useQuery(recipesReading);
   const mayWrite = useMay('write drafts');
   const count = recipes.data?.recipes.length;
-  return (
-    <>
-      <Sheet
-        className="pt-6"
-        margin={
-          <MarginNote label={count === undefined ? 'Recipes' : count === 1 ? '1 recipe' : `${count} recipes`}>
-            <p>Words search names, purposes, topics and labels. A letter amiss is forgiven.</p>
-            {mayWrite && (
-              <p className="mt-4">
-                <Link to={paths.start()}>Write a recipe</Link>
-              </p>
-            )}
-          </MarginNote>
-        }
-      >
-        <h1 tabIndex={-1}>What do you need to build?</h1>
-        {recipes.isPending && <Loading label="Reading the recipes" lines={6} />}
-        {recipes.isError && (
-          <div className="mt-4">
-            <Failure lead="The list was not read." onAgain={() => void recipes.refetch()}>
-              {recipes.error.message}
-            </Failure>
-          </div>
-        )}
-      </Sheet>
-      {recipes.data && <RecipeFinder recipes={recipes.data.recipes} mayWrite={mayWrite} />}
-    </>
+  const margin = (
+    <MarginNote label={count === undefined ? 'Recipes' : count === 1 ? '1 recipe' : `${count} recipes`}>
+      <p>Words search names, purposes, topics and labels. A letter amiss is forgiven.</p>
+      {mayWrite && (
+        <p className="mt-4">
+          <Link to={paths.start()}>Write a recipe</Link>
+        </p>
+      )}
+    </MarginNote>
   );
+  if (recipes.data) return <RecipeFinder recipes={recipes.data.recipes} mayWrite={mayWrite} margin={margin} />;
+  return (
+    <Sheet className="pt-6" margin={margin}>
+      <ListHead />
+      <div className="mt-4">
+        {recipes.isError ? (
+          <Failure lead="The list was not read." onAgain={() => void recipes.refetch()}>
+            {recipes.error.message}
+          </Failure>
+        ) : (
+          <Loading label="Reading the recipes" lines={6} />
+        )}
+      </div>
+    </Sheet>
+  );
+}
+
+function ListHead() {
+  return <h1 tabIndex={-1}>What do you need to build?</h1>;
 }
 
 interface RecipeFinderProps {
   readonly recipes: readonly RecipeRow[];
   readonly mayWrite: boolean;
+  readonly margin: ReactNode;
 }
 
-function RecipeFinder({ recipes, mayWrite }: RecipeFinderProps) {
+function RecipeFinder({ recipes, mayWrite, margin }: RecipeFinderProps) {
   const [params, setParams] = useSearchParams();
   const [typed, setTyped] = useState(params.get('q') ?? '');
   const asked = useQuiet(typed.trim(), QUIET_MS);
@@ -97,7 +99,8 @@ function RecipeFinder({ recipes, mayWrite }: RecipeFinderProps) {
   };
   return (
     <>
-      <Sheet>
+      <Sheet className="pt-6" margin={margin}>
+        <ListHead />
         <div className="ask">
           <label className="sr-only" htmlFor="recipe-search">
             Search the recipes
