@@ -1,7 +1,14 @@
 import { fileURLToPath } from 'node:url';
 import tailwindcss from '@tailwindcss/vite';
 import react from '@vitejs/plugin-react';
-import { defineConfig } from 'vite';
+import { type BuildEnvironmentOptions, defineConfig } from 'vite';
+
+/** The MDX packages' files open with a directive of theirs that means nothing once they are bundled. */
+const bundler: NonNullable<BuildEnvironmentOptions['rolldownOptions']> = {
+  onLog(level, log, handle) {
+    if (log.code !== 'MODULE_LEVEL_DIRECTIVE') handle(level, log);
+  },
+};
 
 const installed = (path: string) => fileURLToPath(new URL(`./node_modules/${path}`, import.meta.url));
 
@@ -22,8 +29,9 @@ export default defineConfig({
     target: 'es2023',
     manifest: true,
     modulePreload: { polyfill: false },
+    rolldownOptions: bundler,
   },
-  worker: { format: 'es' },
+  worker: { format: 'es', rolldownOptions: bundler },
   // Found late by Vite, being behind lazy imports and the worker; unlisted, the first visit in development reloads the page.
   optimizeDeps: {
     include: [
@@ -43,7 +51,6 @@ export default defineConfig({
       'remark-gfm',
       'remark-math',
       'rehype-katex',
-      'hast-util-to-jsx-runtime',
     ],
   },
 });
