@@ -1,6 +1,7 @@
 import { nearestName } from '#formula';
 import { type Span, span, spanFrom } from '#text';
 import { ELEMENTS, isElementName } from './elements.ts';
+import { LIMITS } from './limits.ts';
 import { spanOf, type TreeAttribute, type TreeNode } from './parse-mdx.ts';
 import type { Problems } from './problems.ts';
 import type { AttributeText, Tag } from './scan-tags.ts';
@@ -172,6 +173,8 @@ export function blocksFromTags(tags: readonly Tag[]): readonly ElementBlock[] {
     if (last) (open.at(-1)?.elements ?? top).push(blockOf(last.tag, last.elements, spanFrom(last.tag.span, end)));
   };
   for (const tag of tags) {
+    // Nested deeper than a page may be, which is told elsewhere: what follows is put beside, not inside.
+    if (tag.kind === 'open' && open.length >= LIMITS.depth) close(tag.span);
     if (tag.kind === 'open') open.push({ tag, elements: [] });
     else if (tag.kind === 'empty') (open.at(-1)?.elements ?? top).push(blockOf(tag, [], tag.span));
     else {

@@ -22,6 +22,7 @@ export const LIMITS = {
   marksOfBlock: 2000,
   allMarks: 10_000,
   cells: 10_000,
+  blocks: 5000,
   braces: 200,
 } as const;
 
@@ -52,6 +53,7 @@ export function checkLimits(text: string, scan: TagScan, problems: Problems): bo
   const block = { start: 0, marks: 0, lines: 0, pipes: 0 };
   let markers = 0;
   let marks = 0;
+  let blocks = 0;
   for (let at = 0; at <= text.length; ) {
     LINE.lastIndex = at;
     const length = LINE.exec(text)?.[0].length ?? 0;
@@ -60,6 +62,10 @@ export function checkLimits(text: string, scan: TagScan, problems: Problems): bo
     markers += checkLine(line, place, problems);
     if (text.slice(at, at + length).trim() === '') Object.assign(block, { start: at, marks: 0, lines: 0, pipes: 0 });
     else {
+      if (block.lines === 0 && ++blocks > LIMITS.blocks) {
+        problems.error('too-many-blocks', place, { most: LIMITS.blocks });
+        return false;
+      }
       const found = line.match(MARK) ?? [];
       block.marks += found.length;
       marks += found.length;

@@ -51,6 +51,9 @@ const RECIPE_WORDING = {
     message: () => 'Up to here the text holds more signs of Markdown than can be read in good time.',
     hint: () => 'Break it with blank lines, or use fewer lists and tables.',
   },
+  'too-many-blocks': {
+    message: (f) => `A recipe may hold ${f.most} paragraphs; this is one more.`,
+  },
   'nesting-too-deep': {
     message: (f) => `This is nested deeper than ${f.most} levels.`,
   },
