@@ -32,7 +32,12 @@ export function ChecksPanel({ live, onGoTo }: ChecksPanelProps) {
       </header>
       <ul>
         {ORDER.map((kind) => (
-          <CheckGroup key={kind} kind={kind} checks={live.checks.filter((check) => check.kind === kind)} />
+          <CheckGroup
+            key={kind}
+            kind={kind}
+            isRead={live.isRead}
+            checks={live.checks.filter((check) => check.kind === kind)}
+          />
         ))}
         <li>
           <h3>
@@ -52,7 +57,13 @@ export function ChecksPanel({ live, onGoTo }: ChecksPanelProps) {
   );
 }
 
-function CheckGroup({ kind, checks }: { kind: Check['kind']; checks: readonly Check[] }) {
+interface CheckGroupProps {
+  readonly kind: Check['kind'];
+  readonly checks: readonly Check[];
+  readonly isRead: boolean;
+}
+
+function CheckGroup({ kind, checks, isRead }: CheckGroupProps) {
   const words = KINDS[kind];
   const failed = checks.filter((check) => !check.passed);
   return (
@@ -60,7 +71,7 @@ function CheckGroup({ kind, checks }: { kind: Check['kind']; checks: readonly Ch
       <h3>
         {words.title}
         {checks.length === 0 ? (
-          <span className="check-state">not given</span>
+          <span className="check-state">{isRead ? 'not given' : 'reading'}</span>
         ) : failed.length === 0 ? (
           <span className="check-state check-good">
             <CheckMark isGood /> {checks.length === 1 ? '' : `all ${checks.length} `}
@@ -72,7 +83,7 @@ function CheckGroup({ kind, checks }: { kind: Check['kind']; checks: readonly Ch
           </span>
         )}
       </h3>
-      {checks.length === 0 && <p>{words.none}</p>}
+      {checks.length === 0 && isRead && <p>{words.none}</p>}
       {checks.map((check) => (
         <p key={`${check.title} ${check.detail}`} className={check.passed ? undefined : 'check-bad'}>
           {check.title}

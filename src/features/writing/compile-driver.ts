@@ -26,7 +26,7 @@ export interface CompileDriver {
 
 /**
  * Compiles beside the page: one text at a time, the newest wins, an answer for a text that has moved on is dropped,
- * and a worker that takes longer than 4 s is ended and replaced.
+ * and a worker that takes longer than 4 s over a text is ended and replaced.
  */
 export function createCompileDriver(
   makeWorker: () => CompileWorker,
@@ -36,6 +36,7 @@ export function createCompileDriver(
   let newest: CompileRequest | null = null;
   let flight: number | null = null;
   let version = 0;
+  let isReady = false;
   let quiet: ReturnType<typeof setTimeout> | undefined;
   let guard: ReturnType<typeof setTimeout> | undefined;
 
@@ -43,12 +44,18 @@ export function createCompileDriver(
     clearTimeout(guard);
     worker?.terminate();
     worker = null;
+    isReady = false;
     flight = null;
   }
 
   function started(): CompileWorker {
     const made = makeWorker();
     made.onmessage = ({ data }) => {
+      if ('ready' in data) {
+        isReady = true;
+        if (flight !== null) watch(flight);
+        return;
+      }
       if (data.version !== flight) return;
       clearTimeout(guard);
       flight = null;
@@ -70,15 +77,19 @@ export function createCompileDriver(
     compileNewest();
   }
 
-  function compileNewest(): void {
-    if (flight !== null || newest === null) return;
-    worker ??= started();
-    flight = newest.version;
-    const sent = newest.version;
+  /** The time that a text takes, without that of loading the worker, which a slow line may stretch. */
+  function watch(sent: number): void {
     guard = setTimeout(() => {
       end();
       tell(sent, { kind: 'too-slow' });
     }, LIMIT_MS);
+  }
+
+  function compileNewest(): void {
+    if (flight !== null || newest === null) return;
+    worker ??= started();
+    flight = newest.version;
+    if (isReady) watch(flight);
     worker.postMessage(newest);
     newest = null;
   }

@@ -8,10 +8,13 @@ export interface CompileRequest {
 }
 
 export type CompileAnswer =
+  /** Loaded: from now on the time of a text counts. */
+  | { readonly ready: true }
   | { readonly version: number; readonly compiled: Compiled }
   | { readonly version: number; readonly fault: string };
 
 const compile = createCompiler();
+self.postMessage({ ready: true } satisfies CompileAnswer);
 
 /** One of the four places where a fault of ours is caught: the page says so, and the next text is compiled again. */
 self.onmessage = ({ data }: MessageEvent<CompileRequest>) => {

@@ -21,7 +21,7 @@ export function LivePage({ live, cursor, onFollow }: LivePageProps) {
   const scroller = useRef<HTMLElement>(null);
   const { document } = live;
   useEffect(() => {
-    if (document !== null && scroller.current !== null) followCursor(scroller.current, cursor);
+    if (document !== null && scroller.current !== null) followCursor(scroller.current, document, cursor);
   }, [document, cursor]);
   return (
     // biome-ignore lint/a11y/noNoninteractiveTabindex: it scrolls by itself and must be reached by the keyboard to do so
@@ -81,12 +81,13 @@ function withText(texts: KeptInputs, calculator: string, name: string, text: str
 }
 
 /** Scrolls so that the part the cursor stands in can be seen, and marks it. */
-function followCursor(scroller: HTMLElement, cursor: number): void {
-  const parts = [...scroller.querySelectorAll<HTMLElement>('[data-start]')];
-  const part = partAt(
-    parts.map((element) => ({ element, start: Number(element.dataset.start), end: Number(element.dataset.end) })),
-    cursor,
-  );
+function followCursor(scroller: HTMLElement, document: RecipeDocument, cursor: number): void {
+  const texts = [...scroller.querySelectorAll<HTMLElement>('[data-start]')].map((element) => ({
+    element,
+    start: Number(element.dataset.start),
+    end: Number(element.dataset.end),
+  }));
+  const part = partAt([...texts, ...calculatorParts(scroller, document)], cursor);
   for (const marked of scroller.querySelectorAll('[data-here]')) marked.removeAttribute('data-here');
   if (part === null) return;
   part.element.setAttribute('data-here', '');
@@ -94,6 +95,17 @@ function followCursor(scroller: HTMLElement, cursor: number): void {
   const place = part.element.getBoundingClientRect();
   const isSeen = place.top >= view.top && place.top < view.bottom - 40;
   if (!isSeen) scroller.scrollTop += place.top - view.top - view.height / 4;
+}
+
+/** Calculators carry no place of their own in the page; the document knows it. */
+function calculatorParts(scroller: HTMLElement, document: RecipeDocument): readonly Part[] {
+  return document.body.flatMap((node) => {
+    if (node.type !== 'element' || node.tagName !== 'recipe-calculator' || node.span === undefined) return [];
+    const element = scroller.querySelector<HTMLElement>(
+      `[id=${JSON.stringify(`calculator-${String(node.properties.id)}`)}]`,
+    );
+    return element === null ? [] : [{ element, ...node.span }];
+  });
 }
 
 interface Part {

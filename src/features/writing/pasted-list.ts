@@ -65,7 +65,9 @@ export function readPastedList(text: string): readonly PastedLine[] {
 
 function readLine(text: string, line: number): PastedLine {
   const problem = (why: string): PastedProblem => ({ kind: 'problem', line, text, why });
-  const [, name = '', typed = '', remark = ''] = LINE.exec(text) ?? [];
+  const [, name = '', asTyped = '', remark = ''] = LINE.exec(text) ?? [];
+  // In lists `1 k` is as common as `1k`; the recipe takes the second.
+  const typed = asTyped.replace(/(\d)\s+([kMGmµunpR])$/, '$1$2');
   if (name === '') return problem('Expected a name, then = and a value: R1 = 10k.');
   if (!isName(name)) return problem(`“${name}” is no name, but a Given needs a letter, then letters, digits and _.`);
   if (reservedAs(name) !== null || name === 'if') return problem(`“${name}” has a meaning in formulas already.`);

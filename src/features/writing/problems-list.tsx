@@ -3,18 +3,19 @@ import type { ShownDiagnostic } from '#text';
 export interface ProblemsListProps {
   readonly diagnostics: readonly ShownDiagnostic[];
   readonly isFresh: boolean;
+  readonly isRead: boolean;
   readonly onGoTo: (diagnostic: ShownDiagnostic) => void;
 }
 
 /** What is to put right and what to look at, under the editor, each with its line. */
-export function ProblemsList({ diagnostics, isFresh, onGoTo }: ProblemsListProps) {
+export function ProblemsList({ diagnostics, isFresh, isRead, onGoTo }: ProblemsListProps) {
   const sorted = [...diagnostics].sort((a, b) => rank(a) - rank(b) || a.start.offset - b.start.offset);
   return (
     <section className="problems" aria-label="Problems" aria-busy={!isFresh}>
       <header className="write-head">
         <h2>Problems</h2>
         <span>
-          {countWords(diagnostics)}
+          {isRead ? countWords(diagnostics) : 'reading the text'}
           {diagnostics.length > 0 && (
             <span className="wide-only">
               {' '}

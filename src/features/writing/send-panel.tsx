@@ -19,7 +19,11 @@ export function SendPanel({ draft, written, live, onGoTo }: SendPanelProps) {
   const [refused, setRefused] = useState<readonly ShownDiagnostic[]>([]);
   const { standing } = written.saver;
   const trouble = standing.kind === 'not-yet' || standing.kind === 'not-kept' || standing.kind === 'conflict';
-  const cannot = trouble ? 'Waits until your text is kept.' : live.isFresh ? whyNotSend(live) : undefined;
+  const cannot = trouble
+    ? 'Waits until your text is kept.'
+    : live.isFresh || !live.isRead
+      ? whyNotSend(live)
+      : undefined;
   return (
     <div className="send-panel">
       <p className="note">An editor who wrote no part of it signs it off. While it is in review the text is frozen.</p>
@@ -56,6 +60,7 @@ export function SendPanel({ draft, written, live, onGoTo }: SendPanelProps) {
 
 /** What keeps a compiled text from being sent; undefined when nothing does. */
 export function whyNotSend(live: LiveCompiled): string | undefined {
+  if (!live.isRead) return 'Waits for the checks.';
   if (live.isClean) return undefined;
   const lines = [...new Set(live.diagnostics.filter((d) => d.severity === 'error').map((d) => d.start.line))];
   const failed = live.checks.filter((check) => !check.passed);

@@ -10,6 +10,8 @@ export interface LiveCompiled {
   readonly older: string | null;
   readonly diagnostics: readonly ShownDiagnostic[];
   readonly checks: readonly Check[];
+  /** Whether any text was answered for yet. */
+  readonly isRead: boolean;
   /** Whether the answer belongs to the text as it stands now. */
   readonly isFresh: boolean;
   /** Nothing that keeps it from being sent: it compiles, no error, every check passed. */
@@ -21,6 +23,7 @@ const NOTHING: LiveCompiled = {
   older: null,
   diagnostics: [],
   checks: [],
+  isRead: false,
   isFresh: false,
   isClean: false,
 };
@@ -55,7 +58,7 @@ export function useCompiled(
 /** The state after an answer: what cannot be read keeps the last good page, and says so. */
 export function withAnswer(before: LiveCompiled, answer: LiveAnswer): LiveCompiled {
   if (answer.kind !== 'compiled') {
-    return { ...before, older: NO_ANSWER[answer.kind], isFresh: answer.kind === 'too-slow', isClean: false };
+    return { ...before, older: NO_ANSWER[answer.kind], isRead: true, isFresh: true, isClean: false };
   }
   const { document, preview, diagnostics, checks } = answer.compiled;
   const page = document ?? preview;
@@ -64,6 +67,7 @@ export function withAnswer(before: LiveCompiled, answer: LiveAnswer): LiveCompil
     older: page === null ? unreadable(diagnostics) : null,
     diagnostics,
     checks,
+    isRead: true,
     isFresh: true,
     isClean: document !== null && diagnostics.every((d) => d.severity !== 'error') && checks.every((c) => c.passed),
   };

@@ -30,6 +30,14 @@ function readMessage(message: unknown): TabMessage | null {
   return kind === 'here' && typeof key === 'string' ? { kind, key } : null;
 }
 
+/** A save may be acknowledged after its page was left; the page that is open now hears of it all the same. */
+function tellKept(name: string, open: Channel<TabMessage> | null, revision: number): void {
+  if (open !== null) return open.tell({ kind: 'kept', revision });
+  const brief = openChannel<TabMessage>(name, readMessage, () => undefined);
+  brief.tell({ kind: 'kept', revision });
+  brief.close();
+}
+
 export interface DraftText {
   readonly text: string;
   readonly saver: UsedAutosave<string, DraftBase, DraftConflict>;
@@ -50,6 +58,7 @@ export function useDraftText(page: DraftPage): DraftText {
   const { id } = page.draft;
   const person = usePerson();
   const queries = useQueryClient();
+  const channelName = `draft/${person.id}/${id}`;
   const [text, setText] = useState(page.text);
   const [offers, setOffers] = useState<readonly UnsentText[]>([]);
   const editor = useRef<MountedEditor | null>(null);
@@ -69,7 +78,7 @@ export function useDraftText(page: DraftPage): DraftText {
       const kept = await sendDraftText(id, save);
       if (kept.kind === 'kept') {
         revision.current = kept.base.revision;
-        channel.current?.tell({ kind: 'kept', revision: kept.base.revision });
+        tellKept(channelName, channel.current, kept.base.revision);
       }
       return kept;
     },
@@ -125,7 +134,7 @@ export function useDraftText(page: DraftPage): DraftText {
 
   useEffect(() => {
     const living = new Set<string>();
-    const opened = openChannel<TabMessage>(`draft/${person.id}/${id}`, readMessage, (message) => {
+    const opened = openChannel<TabMessage>(channelName, readMessage, (message) => {
       if (message.kind === 'who') opened.tell({ kind: 'here', key: unsent.key });
       else if (message.kind === 'here') living.add(message.key);
       else if (message.revision > revision.current) void catchUp();
@@ -144,7 +153,7 @@ export function useDraftText(page: DraftPage): DraftText {
       channel.current = null;
       opened.close();
     };
-  }, [id, person.id, unsent, catchUp]);
+  }, [channelName, unsent, catchUp]);
 
   const offered = offers[0] ?? null;
   const endOffer = (isTaken: boolean) => {

@@ -60,7 +60,7 @@ export function WriteColumns({ text, facts, label, isReadOnly = false, onText, e
           onCursor={setCursor}
           handle={editor}
         />
-        <ProblemsList diagnostics={live.diagnostics} isFresh={live.isFresh} onGoTo={goTo} />
+        <ProblemsList diagnostics={live.diagnostics} isFresh={live.isFresh} isRead={live.isRead} onGoTo={goTo} />
       </div>
       <LivePage live={live} cursor={cursor} onFollow={follow} />
       <div className="write-side">

@@ -83,9 +83,17 @@ function completeElement(context: CompletionContext, open: readonly SourceTag[])
   return { from: word.from, options, validFor: /^<[A-Za-z]*$/ };
 }
 
+/** Attributes that may be left out, and hardly ever are. */
+const USUAL: Readonly<Record<string, readonly string[]>> = {
+  Result: ['formula'],
+  Limit: ['to'],
+  Expect: ['name', 'to'],
+};
+
 /** The element with what it must have; fields are visited with Tab while the snippet is open. */
 export function templateOf(name: string, row: ElementRow): string {
-  const required = Object.entries(row.attributes).filter(([, attribute]) => attribute.required);
+  const wanted = USUAL[name] ?? [];
+  const required = Object.entries(row.attributes).filter(([key, { required }]) => required || wanted.includes(key));
   const typed = required.map(([attribute]) => ` ${attribute}="\${}"`).join('');
   if (row.holds === 'nothing') return `<${name}${typed} />\${}`;
   return `<${name}${typed}>\n\${}\n</${name}>`;

@@ -1,6 +1,6 @@
 import { closeBrackets, closeBracketsKeymap, completionKeymap } from '@codemirror/autocomplete';
 import { defaultKeymap, history, historyKeymap } from '@codemirror/commands';
-import { bracketMatching } from '@codemirror/language';
+import { bracketMatching, indentService } from '@codemirror/language';
 import { type Diagnostic, lintGutter, setDiagnostics } from '@codemirror/lint';
 import { highlightSelectionMatches, searchKeymap } from '@codemirror/search';
 import { Annotation, EditorState, type Extension, Prec, type Transaction } from '@codemirror/state';
@@ -114,6 +114,8 @@ function surface({ label, isReadOnly }: EditorSettings): readonly Extension[] {
     history(),
     drawSelection(),
     bracketMatching(),
+    // A new line begins where the one before it began.
+    indentService.of((context, at) => /^ */.exec(context.lineAt(at, -1).text)?.[0].length ?? 0),
     closeBrackets(),
     highlightActiveLine(),
     highlightActiveLineGutter(),
