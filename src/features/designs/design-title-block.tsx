@@ -23,7 +23,7 @@ export function DesignTitleBlock({ page: { design }, isDirty, children }: Design
           <TitleCell label="Recipe version">
             <span className="text-page">{version}</span>
           </TitleCell>
-          <TitleCell label="State of that version">
+          <TitleCell label="Its state">
             <StateMark state={design.versionState} />
           </TitleCell>
           <TitleCell label="Design of" note={`seen by: ${visibilityWords(design).toLowerCase()}`}>

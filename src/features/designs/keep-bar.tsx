@@ -2,16 +2,16 @@ import { Failure } from '../../ui/blocks.tsx';
 import { Button } from '../../ui/button.tsx';
 import { type DesignState, FIELD_LABELS, refusedNames } from './use-design.ts';
 
-/** At the foot, always in view: whether everything is kept, and the way to keep it. */
+/** At the foot, in view as long as something is not kept: what that is, and the way to keep it. */
 export function KeepBar({ state, formId }: { state: DesignState; formId: string }) {
   const { form, isDirty, moved } = state;
   return (
-    <section className="keep-bar" aria-label="Keeping">
+    <section className={isDirty ? 'keep-bar keep-bar-open' : 'keep-bar'} aria-label="Keeping">
       {form.refusal !== null && moved === null && (
         <Failure lead="Not kept.">{form.refusal.message} What you typed is still here.</Failure>
       )}
       <div className="keep-bar-line">
-        <p className="note">{isDirty ? changedWords(state) : 'Everything is kept.'}</p>
+        {isDirty && <p className="note">{changedWords(state)}</p>}
         {form.mending !== null && <span className="field-error">{form.mending}</span>}
         {isDirty && (
           <Button small onClick={state.putBack}>

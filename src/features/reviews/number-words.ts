@@ -1,15 +1,28 @@
 import type { ReviewPage } from '#api';
 import type { RecipeDocument } from '#recipe';
 
-/** How many results of how many examples move: `2 of 7 results move, in 2 of 3 worked examples.` */
-export function exampleWords(numbers: ReviewPage['numbers'], document: RecipeDocument): string {
-  const results = document.calculators.reduce((sum, one) => sum + one.results.length, 0);
-  const examples = document.calculators.reduce((sum, one) => sum + one.examples.length, 0);
-  if (examples === 0) return 'There are no worked examples, so nothing shows what moves.';
-  if (numbers.length === 0) return `No number of the ${counted(examples, 'worked example')} moves.`;
+/** How many results move, and where: `2 of 7 results move, at the recipe’s own values and in 2 of 3 worked examples.` */
+export function exampleWords(numbers: ReviewPage['numbers'], before: RecipeDocument, after: RecipeDocument): string {
+  const results = after.calculators.reduce((sum, one) => sum + one.results.length, 0);
+  const examples = after.calculators.reduce((sum, one) => sum + one.examples.length, 0);
+  const looked = examples === 0 ? '' : ` and in ${counted(examples, 'worked example')}`;
+  if (numbers.length === 0) return `No result moves, at the recipe’s own values${looked}.`;
   const moved = new Set(numbers.map((one) => `${one.calculator} ${one.result}`)).size;
-  const inExamples = new Set(numbers.map((one) => `${one.calculator} ${one.example}`)).size;
-  return `${moved} of ${counted(results, 'result')} ${moved === 1 ? 'moves' : 'move'}, in ${inExamples} of ${counted(examples, 'worked example')}.`;
+  const inExamples = numbers.filter((one) => hasExample(before, one) || hasExample(after, one));
+  const titles = new Set(inExamples.map((one) => `${one.calculator} ${one.example}`)).size;
+  const where = [
+    ...(inExamples.length < numbers.length ? ['at the recipe’s own values'] : []),
+    ...(titles > 0 ? [`in ${titles} of ${counted(examples, 'worked example')}`] : []),
+  ];
+  return `${moved} of ${counted(results, 'result')} ${moved === 1 ? 'moves' : 'move'}, ${where.join(' and ')}.`;
+}
+
+/** Whether a number belongs to a worked example of this document; else it stands at the recipe's own values. */
+export function hasExample(
+  { calculators }: RecipeDocument,
+  { calculator, example }: Pick<ReviewPage['numbers'][number], 'calculator' | 'example'>,
+): boolean {
+  return calculators.some((one) => one.id === calculator && one.examples.some((each) => each.title === example));
 }
 
 /** What happens to the designs that this person may see. */

@@ -1,9 +1,10 @@
 import { useState } from 'react';
 import type { ReviewPage } from '#api';
+import type { RecipeDocument } from '#recipe';
 import { Amount } from '../../document/result-rows.tsx';
 import { Button } from '../../ui/button.tsx';
 import { LimitMark } from '../../ui/marks.tsx';
-import { designWords, exampleWords, privateWords } from './number-words.ts';
+import { designWords, exampleWords, hasExample, privateWords } from './number-words.ts';
 
 type Change = ReviewPage['numbers'][number];
 type Affected = ReviewPage['designs']['seen'][number];
@@ -20,7 +21,7 @@ export function NumbersThatMove({ page }: { page: ReviewPage }) {
   return (
     <>
       <p className="note mb-3">
-        {exampleWords(numbers, document)} {designWords(designs)}
+        {exampleWords(numbers, base.document, document)} {designWords(designs)}
       </p>
       {numbers.length > 0 && (
         <table className="moves">
@@ -34,14 +35,14 @@ export function NumbersThatMove({ page }: { page: ReviewPage }) {
                   <th scope="row">{row.example}</th>
                   <Before value={row.before} />
                   <After value={row.after} />
-                  <td>{meaningOf(row, checks)}</td>
+                  <td>{meaningOf(row, base.document, checks)}</td>
                 </tr>
               ))}
             </tbody>
           ))}
         </table>
       )}
-      <DesignMoves designs={designs.seen} headings={headings} />
+      <DesignMoves designs={designs.seen} />
       {hidden !== null && (
         <p className={designs.privateNewlyBroken > 0 ? 'moves-private moves-broken' : 'moves-private'}>
           {designs.privateNewlyBroken > 0 && <LimitMark state="exceeded">newly broken</LimitMark>} {hidden}
@@ -51,12 +52,7 @@ export function NumbersThatMove({ page }: { page: ReviewPage }) {
   );
 }
 
-interface DesignMovesProps {
-  readonly designs: readonly Affected[];
-  readonly headings: { readonly before: string; readonly after: string };
-}
-
-function DesignMoves({ designs, headings }: DesignMovesProps) {
+function DesignMoves({ designs }: { designs: readonly Affected[] }) {
   const [showsAll, setShowsAll] = useState(false);
   if (designs.length === 0) return null;
   const sorted = [...designs].sort((a, b) => Number(isBroken(b)) - Number(isBroken(a)));
@@ -65,7 +61,7 @@ function DesignMoves({ designs, headings }: DesignMovesProps) {
   return (
     <table className="moves">
       <caption className="sr-only">Numbers of kept designs that would move</caption>
-      <MoveHeads first="Design, with its own inputs" {...headings} last="What that means" />
+      <MoveHeads first="Design, with its own inputs" before="on its version" after="in review" last="What that means" />
       {shown.map((design) => (
         <tbody key={design.id}>
           <GroupHead>
@@ -139,11 +135,11 @@ function After({ value }: { value: string | null }) {
   );
 }
 
-function meaningOf(row: Change, checks: ReviewPage['checks']): string {
+function meaningOf(row: Change, before: RecipeDocument, checks: ReviewPage['checks']): string {
   if (row.before === null) return 'new';
   if (row.after === null) return 'no longer there';
   const check = checks.find((one) => one.kind === 'example' && one.title === row.example);
-  if (check === undefined) return 'of the old version only';
+  if (check === undefined) return hasExample(before, row) ? 'an example of the old version only' : '';
   return check.passed ? 'the example agrees with the text in review' : 'the example disagrees';
 }
 

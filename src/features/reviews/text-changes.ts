@@ -1,4 +1,4 @@
-import { diffLines, diffWords } from 'diff';
+import { diffArrays, diffLines } from 'diff';
 
 /** A run of words: in both texts, taken out, or put in. */
 export interface Words {
@@ -67,13 +67,14 @@ export function textChanges(before: string, after: string): TextChanges {
     at.before += removed?.count ?? 0;
     at.after += added?.count ?? 0;
   }
-  return { changes, unchanged: [...new Set(places.after)].filter((place) => !touched.has(place)) };
+  const filled = linesOf(fresh).flatMap((line, index) => (line.trim() === '' ? [] : (places.after[index] ?? [])));
+  return { changes, unchanged: [...new Set(filled)].filter((place) => !touched.has(place)) };
 }
 
 function wordsOf(removed: string, added: string): readonly Words[] {
   if (removed === '') return [{ kind: 'added', text: added }];
   if (added === '') return [{ kind: 'removed', text: removed }];
-  const parts = diffWords(removed, added, { timeout: WORDS_MS });
+  const parts = diffArrays(tokensOf(removed), tokensOf(added), { comparator: isSameToken, timeout: WORDS_MS });
   if (parts === undefined) {
     return [
       { kind: 'removed', text: removed },
@@ -82,8 +83,19 @@ function wordsOf(removed: string, added: string): readonly Words[] {
   }
   return parts.map((part) => ({
     kind: part.removed ? 'removed' : part.added ? 'added' : 'same',
-    text: part.value,
+    text: part.value.join(''),
   }));
+}
+
+/** Numbers, names and single signs, each with the space after it; so `2` and `2.5` are two numbers, not one with a tail. */
+const TOKEN = /(?:\d+(?:[.,]\d+)*|[\p{L}_][\p{L}\p{N}_]*|\S)\s*|\s+/gu;
+
+function tokensOf(text: string): string[] {
+  return text.match(TOKEN) ?? [];
+}
+
+function isSameToken(one: string, other: string): boolean {
+  return one.trim() === other.trim();
 }
 
 const TOP = 'Before the first section';

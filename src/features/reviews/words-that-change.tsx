@@ -33,10 +33,10 @@ function Change({ change }: { change: TextChange }) {
       </p>
       <div className="redline-words">
         {change.isLayoutOnly && <p className="note">Only spaces and line breaks differ.</p>}
-        <p>
+        <p className={change.place.startsWith('Section') ? 'redline-prose' : 'redline-source'}>
           {change.words.map((words, at) => (
             // biome-ignore lint/suspicious/noArrayIndexKey: runs are made anew with their texts and have no other name
-            <Run key={at} words={words} />
+            <Run key={at} words={words} next={change.words[at + 1]} />
           ))}
         </p>
       </div>
@@ -44,15 +44,21 @@ function Change({ change }: { change: TextChange }) {
   );
 }
 
-function Run({ words: { kind, text } }: { words: Words }) {
+function Run({ words: { kind, text }, next }: { words: Words; next: Words | undefined }) {
   if (kind === 'same') return text;
   const Mark = kind === 'removed' ? 'del' : 'ins';
+  const marked = text.trimEnd();
+  // What was put in its place brings the space along.
+  const space = kind === 'removed' && next?.kind === 'added' ? '' : text.slice(marked.length);
   return (
-    <Mark>
-      <span className="sr-only"> {kind}: </span>
-      {text.replace(/\n$/, '')}
-      <span className="sr-only">. </span>
-    </Mark>
+    <>
+      <Mark>
+        <span className="sr-only"> {kind}: </span>
+        {marked}
+        <span className="sr-only">. </span>
+      </Mark>
+      {space}
+    </>
   );
 }
 
