@@ -30,6 +30,11 @@ export function mayWriteDraft(person: Person, draft: DraftFacts): boolean {
   return mayDo(person.role, 'write drafts') && isAuthor(person, draft);
 }
 
+/** Taken off the draft, or no longer an author of the team: late words of theirs are kept, but go no further. */
+export function couldOnceWrite(person: Person, draft: DraftFacts & { readonly removedIds: readonly string[] }): boolean {
+  return isAuthor(person, draft) || draft.removedIds.includes(person.id);
+}
+
 /** Inviting authors and putting a draft aside: its owner, and editors, so that nobody's leaving blocks a recipe. */
 export function mayManageDraft(person: Person, draft: DraftFacts): boolean {
   return mayDo(person.role, 'decide reviews') || (mayDo(person.role, 'write drafts') && draft.ownerId === person.id);

@@ -1,11 +1,11 @@
 import { and, eq, sql } from 'drizzle-orm';
-import type { Answer, Failure } from '#api';
+import { type Answer, type Failure, mayDo } from '#api';
 import { fail, ok, type Result } from '#text';
 import type { Db } from '../database/open.ts';
 import { rows } from '../database/rows.ts';
 import { draftSave } from '../database/schema.ts';
 import type { Input, Person, Service, SignedInContext } from '../http/context.ts';
-import { maySeeDraft, mayWriteDraft } from './access.ts';
+import { couldOnceWrite, maySeeDraft, mayWriteDraft } from './access.ts';
 import { draftNow, textAt } from './draft-conflict.ts';
 import { type LoadedDraft, loadDraft, lockDraft, noDraft } from './draft-rows.ts';
 import { frontKey, hashText } from './recipe-text.ts';
@@ -41,6 +41,7 @@ function saved(text: string, revision: number, at: Date): Answer<'drafts.saveTex
  * The first change by a person is one line of the audit log.
  */
 async function putOnDraft(db: Db, person: Person, input: Save, now: Date): Promise<number | null> {
+  if (!mayDo(person.role, 'write drafts')) return null;
   const title = frontKey(input.text, 'title');
   const [moved] = await rows<{ revision: number }>(
     db,
@@ -111,7 +112,7 @@ async function putAside(context: SignedInContext, input: Save): Promise<Result<A
   const draft = await loadDraft(db, input.id);
   if (draft === null) return fail(noDraft);
   const mayWrite = mayWriteDraft(person, draft);
-  if (!mayWrite && !draft.removedIds.includes(person.id))
+  if (!mayWrite && !couldOnceWrite(person, draft))
     return fail(maySeeDraft(person, draft) ? notAnAuthor : noDraft);
   const aside = !mayWrite ? 'not-allowed' : draft.state === 'draft' ? 'stale' : draft.state;
   await db.insert(draftSave).values({

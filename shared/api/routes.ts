@@ -53,7 +53,8 @@ export const ROUTES = {
   'drafts.list': { method: 'GET', path: '/api/drafts', action: 'write drafts' },
   'drafts.start': { method: 'POST', path: '/api/drafts', action: 'write drafts' },
   'drafts.read': { method: 'GET', path: '/api/drafts/:id', action: 'write drafts' },
-  'drafts.saveText': { method: 'PUT', path: '/api/drafts/:id/text', action: 'write drafts' },
+  // Gated for readers too: somebody who could write it and was made a reader meanwhile still gets their last words kept to the side.
+  'drafts.saveText': { method: 'PUT', path: '/api/drafts/:id/text', action: 'read recipes' },
   'drafts.saves': { method: 'GET', path: '/api/drafts/:id/saves', action: 'write drafts' },
   'drafts.readSave': { method: 'GET', path: '/api/drafts/:id/saves/:saveId', action: 'write drafts' },
   'drafts.setAuthors': { method: 'POST', path: '/api/drafts/:id/authors', action: 'write drafts' },

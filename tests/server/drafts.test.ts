@@ -1,6 +1,6 @@
 import { and, eq } from 'drizzle-orm';
 import { beforeEach, describe, expect, test } from 'vitest';
-import { auditEvent, draft, draftSave, draftWriter, mail, recipe, review } from '../../server/database/schema.ts';
+import { auditEvent, draft, draftSave, draftWriter, mail, recipe, review, user } from '../../server/database/schema.ts';
 import { type KeptSave, pruneDraftSaves, savesToDrop } from '../../server/services/draft-saves.ts';
 import { clientId, freshWorkflow, hashText, recipeText, sorted, statuses, type Workflow } from './workflow-app.ts';
 
@@ -134,8 +134,18 @@ describe('saving the text of a draft', () => {
     const id = await flow.start(flow.author, 'base');
     await flow.save(flow.outsider, id, 0, 'x').expect(404);
     await flow.save(flow.editor, id, 0, 'x').expect(403);
-    await flow.save(flow.reader, id, 0, 'x').expect(403);
+    await flow.save(flow.reader, id, 0, 'x').expect(404);
     expect(await flow.db.select().from(draftSave).where(eq(draftSave.draftId, id))).toHaveLength(1);
+  });
+
+  test('an author who was made a reader meanwhile changes nothing, and their last words are kept beside the draft', async () => {
+    const id = await flow.start(flow.author, 'base');
+    const saveId = clientId();
+    await flow.db.update(user).set({ role: 'reader' }).where(eq(user.id, flow.author.id));
+    const { body } = await flow.save(flow.author, id, 0, 'last words', saveId).expect(409);
+    expect(body).toMatchObject({ saveId, text: 'base' });
+    expect(await stored(saveId)).toMatchObject({ text: 'last words', aside: 'not-allowed', pinned: true });
+    expect((await rowOf(id))?.text).toBe('base');
   });
 
   test('the id of another person’s save is refused', async () => {
