@@ -31,7 +31,10 @@ export function mayWriteDraft(person: Person, draft: DraftFacts): boolean {
 }
 
 /** Taken off the draft, or no longer an author of the team: late words of theirs are kept, but go no further. */
-export function couldOnceWrite(person: Person, draft: DraftFacts & { readonly removedIds: readonly string[] }): boolean {
+export function couldOnceWrite(
+  person: Person,
+  draft: DraftFacts & { readonly removedIds: readonly string[] },
+): boolean {
   return isAuthor(person, draft) || draft.removedIds.includes(person.id);
 }
 

@@ -112,8 +112,7 @@ async function putAside(context: SignedInContext, input: Save): Promise<Result<A
   const draft = await loadDraft(db, input.id);
   if (draft === null) return fail(noDraft);
   const mayWrite = mayWriteDraft(person, draft);
-  if (!mayWrite && !couldOnceWrite(person, draft))
-    return fail(maySeeDraft(person, draft) ? notAnAuthor : noDraft);
+  if (!mayWrite && !couldOnceWrite(person, draft)) return fail(maySeeDraft(person, draft) ? notAnAuthor : noDraft);
   const aside = !mayWrite ? 'not-allowed' : draft.state === 'draft' ? 'stale' : draft.state;
   await db.insert(draftSave).values({
     id: input.saveId,
