@@ -45,7 +45,12 @@ const BOOST = { title: 4, names: 3 };
 const PREFIX_FROM_LETTERS = 2;
 
 export function createRecipeSearch(): RecipeSearch {
-  const index = new MiniSearch<Entry>({ fields: [...FIELDS], storeFields: ['slug'], searchOptions: SEARCH });
+  const index = new MiniSearch<Entry>({
+    fields: [...FIELDS],
+    storeFields: ['slug'],
+    processTerm: telling,
+    searchOptions: SEARCH,
+  });
   const stale = new Set<string>();
   let building: Promise<void> | undefined;
 
@@ -70,6 +75,23 @@ export function createRecipeSearch(): RecipeSearch {
   };
 }
 
+/** Words that nearly every recipe holds: they tell none from another, and each would cost a look at all. Common practice, no source. */
+const EMPTY_WORDS: ReadonlySet<string> = new Set(
+  'a an and as at be by for from in into is it its of on or that the this to with within'.split(' '),
+);
+
+function telling(word: string): string | null {
+  const term = word.toLowerCase();
+  return EMPTY_WORDS.has(term) ? null : term;
+}
+
+/** Empty words are left out, but where nothing else was typed they are taken as the start of another: "on" of "one-shot". */
+function termsOf(query: string) {
+  const tokenize: (text: string) => readonly string[] = MiniSearch.getDefault('tokenize');
+  const tells = tokenize(query).some((word) => word !== '' && telling(word) !== null);
+  return tells ? {} : { processTerm: (word: string) => word.toLowerCase() };
+}
+
 const SEARCH = {
   prefix: (term: string) => term.length >= PREFIX_FROM_LETTERS,
   combineWith: 'AND' as const,
@@ -77,17 +99,22 @@ const SEARCH = {
 };
 
 function search(index: MiniSearch<Entry>, query: string): readonly Hit[] {
-  const exact = index.search(query);
+  const terms = termsOf(query);
+  const exact = index.search(query, terms);
   const found =
     exact.length >= FEW_HITS
       ? exact
-      : [...exact, ...without(index.search(query, { fuzzy: fuzzyFor }), new Set(exact.map((hit) => String(hit.id))))];
+      : [
+          ...exact,
+          ...without(index.search(query, { ...terms, fuzzy: fuzzyFor }), new Set(exact.map((hit) => String(hit.id)))),
+        ];
   // The slug was stored with the entry.
   return found.slice(0, HIT_LIMIT).map((hit) => ({ slug: String(hit.slug), matched: hit.terms }));
 }
 
+/** A number is meant as it stands: 4.7 and 4.8 are not misspellings of one another. */
 function fuzzyFor(term: string): number | false {
-  return term.length >= FUZZY_FROM_LETTERS ? FUZZY_SHARE : false;
+  return term.length >= FUZZY_FROM_LETTERS && !/\d/.test(term) ? FUZZY_SHARE : false;
 }
 
 function without<T extends { readonly id: unknown }>(hits: readonly T[], ids: ReadonlySet<string>): readonly T[] {

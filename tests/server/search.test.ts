@@ -36,6 +36,21 @@ describe('searching recipes', () => {
     expect(await slugs('tii')).toEqual([]);
   });
 
+  test('passes over words that nearly every recipe holds, unless nothing else was typed', async () => {
+    await flow.publish(recipeText('rail-splitter'));
+    await flow.publish(recipeText('pulse', '', 'keywords: one-shot\n'));
+    expect(await slugs('the splitter within it')).toEqual(['rail-splitter']);
+    expect(await slugs('splitter on')).toEqual(['rail-splitter']);
+    expect(await slugs('on')).toEqual(['pulse']);
+    expect(await slugs('of')).toEqual([]);
+  });
+
+  test('takes a number as it stands', async () => {
+    await flow.publish(recipeText('rail-splitter', '', 'keywords: "4700"\n'));
+    await flow.publish(recipeText('bias-tee', '', 'keywords: "4800"\n'));
+    expect(await slugs('4700')).toEqual(['rail-splitter']);
+  });
+
   test('tries misspellings only while there are few exact hits, and puts exact hits first', async () => {
     for (const n of ['a', 'b', 'c', 'd', 'e']) await flow.publish(recipeText(`level-${n}${n}`));
     await flow.publish(recipeText('lever'));
