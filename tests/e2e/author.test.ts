@@ -44,7 +44,7 @@ async function startDraft(page: Page, title: string): Promise<string> {
   await page.getByLabel(/Title of your recipe/).fill(title);
   await page.getByRole('button', { name: 'Start writing' }).click();
   await page.waitForURL(/\/write\/.+/);
-  await page.getByText('none found').waitFor();
+  await page.getByText('none found', { exact: true }).waitFor();
   return page.url();
 }
 
@@ -78,7 +78,7 @@ describe('the author', () => {
     await cursorBehind(page, 'name="P"');
     for (let step = 0; step < 4; step++) await page.keyboard.press('ArrowLeft');
     for (let step = 0; step < 4; step++) await page.keyboard.press('Backspace');
-    await page.getByText('none found').waitFor();
+    await page.getByText('none found', { exact: true }).waitFor();
     await live.getByText('2.500', { exact: false }).first().waitFor();
 
     await page.getByRole('button', { name: 'Send for review…' }).click();
@@ -89,7 +89,7 @@ describe('the author', () => {
     expect(await source(page).getAttribute('contenteditable')).toBe('false');
 
     await page.getByRole('button', { name: 'Take back' }).click();
-    await page.getByText('none found').waitFor();
+    await page.getByText('none found', { exact: true }).waitFor();
     await page.getByRole('button', { name: 'Send for review…' }).click();
     await page
       .getByRole('dialog', { name: 'Send for review' })
@@ -105,7 +105,7 @@ describe('the author', () => {
     const address = await startDraft(page, 'Lamp in the van');
     const other = await context.newPage();
     await other.goto(address);
-    await other.getByText('none found').waitFor();
+    await other.getByText('none found', { exact: true }).waitFor();
 
     await cursorBehind(page, 'summary:');
     await page.keyboard.insertText(' First tab.');
