@@ -137,7 +137,7 @@ describe('the recipe page', () => {
   });
 
   test('says “not yet kept: no connection” and repeats the save under its own id', async () => {
-    const connection = { isUp: false };
+    const connection: { isUp: boolean } = { isUp: false };
     const { heard, user } = open(
       `/recipes/${SLUG}`,
       answersOf({
@@ -360,12 +360,13 @@ describe('the list of recipes', () => {
   });
 
   test('says that the list was not read and tries again', async () => {
-    let isDown = true;
+    const server: { isDown: boolean } = { isDown: true };
     const { user } = open('/recipes', {
-      'GET /api/recipes': () => (isDown ? { status: 400, body: { detail: 'Broken.' } } : list['GET /api/recipes']),
+      'GET /api/recipes': () =>
+        server.isDown ? { status: 400, body: { detail: 'Broken.' } } : list['GET /api/recipes'],
     });
     expect(await screen.findByText('The list was not read.', {}, { timeout: 8000 })).toBeTruthy();
-    isDown = false;
+    server.isDown = false;
     await user.click(screen.getByRole('button', { name: 'Try again' }));
     expect(await screen.findByText('Rail splitter')).toBeTruthy();
   });
