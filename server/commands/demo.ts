@@ -11,6 +11,7 @@ import type { Place } from '../place.ts';
 import { scryptHash } from '../services/accounts/passwords.ts';
 import { addPerson } from '../services/accounts/people-rows.ts';
 import { type Running, startServer } from '../start-up.ts';
+import { playScenario } from './demo-scenario.ts';
 
 /** The invented workshop of a volunteer-run light railway. */
 const PEOPLE = {
@@ -33,6 +34,9 @@ export async function startDemo(
   const env = readEnv({ ...variables, QUADRILLE_DATA: join(folder, 'data') });
   const running = await startServer({ env, place, log });
   const passwords = await addTeam(running);
+  const account = (role: Role) => ({ email: PEOPLE[role].email, password: passwords[role] });
+  const team = { author: account('author'), editor: account('editor'), reader: account('reader') };
+  await playScenario(running.url, join(place.starters, 'demo'), team);
   const rows = ROLES.map((role) => [role, PEOPLE[role].email, passwords[role]]);
   return { running: { ...running, setUpLink: null }, table: columns([['role', 'e-mail', 'password'], ...rows]) };
 }

@@ -29,4 +29,5 @@ export type {
 export type { Evaluation, LimitOutcome, NoValueReason, Outcome, Sample, UnboundedReason } from './outcome.ts';
 export { type InputOptions, readInputs, withLastGood } from './read-inputs.ts';
 export { type RunJson, toRunJson } from './run-json.ts';
+export { type ShownNumbers, shownNumbers } from './shown-numbers.ts';
 export { fieldMessage, LIMIT_STATE_WORDS } from './wording.ts';
