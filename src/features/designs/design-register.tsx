@@ -45,9 +45,9 @@ function DesignLine({ row, showsOwner }: { row: DesignRow; showsOwner: boolean }
       </td>
       <td data-head="Stays on">
         version {row.version}
-        <small>
+        <span className="design-state">
           <StateMark state={row.versionState} />
-        </small>
+        </span>
       </td>
       <td data-head="Limits, as kept">
         <LimitsCell row={row} />

@@ -67,6 +67,12 @@ function KindOfChecks({ kind, checks }: { kind: Check['kind']; checks: readonly 
   );
 }
 
+const COUNTED = [
+  ['example', 'worked example', 'worked examples'],
+  ['drawing', 'drawing', 'drawings'],
+  ['caution', 'check of hazards', 'checks of hazards'],
+] as const;
+
 /** One line for each kind, for the decision: `3 of 3 worked examples agree`. */
 export function checkedForYou(page: ReviewPage): readonly { readonly words: string; readonly passed: boolean }[] {
   const { checks, document } = page;
@@ -80,14 +86,11 @@ export function checkedForYou(page: ReviewPage): readonly { readonly words: stri
     const agree = passed('dimensions') === all('dimensions');
     lines.push({ words: agree ? `Dimensions agree${formulas}` : 'Dimensions do not agree', passed: agree });
   }
-  for (const [kind, noun] of [
-    ['example', 'worked example'],
-    ['drawing', 'drawing'],
-    ['caution', 'check of hazards'],
-  ] as const) {
+  for (const [kind, one, many] of COUNTED) {
     if (all(kind) === 0) continue;
-    const nouns = kind === 'caution' && all(kind) !== 1 ? `${all(kind)} checks of hazards` : counted(all(kind), noun);
-    lines.push({ words: `${passed(kind)} of ${nouns} agree`, passed: passed(kind) === all(kind) });
+    const agrees = passed(kind) === all(kind);
+    const single = `The ${one} ${agrees ? 'agrees' : 'disagrees'}`;
+    lines.push({ words: all(kind) === 1 ? single : `${passed(kind)} of ${all(kind)} ${many} agree`, passed: agrees });
   }
   return lines;
 }

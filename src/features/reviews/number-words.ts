@@ -37,9 +37,12 @@ export function designWords({ seen, unchanged, privateCount }: ReviewPage['desig
 /** Designs of others that are theirs alone are counted and nothing more is told; null when none would move. */
 export function privateWords({ privateCount, privateNewlyBroken }: ReviewPage['designs']): string | null {
   if (privateCount === 0) return null;
+  if (privateCount === 1) {
+    return `And 1 private design would move, ${privateNewlyBroken === 1 ? 'and a limit would break in it' : 'breaking no limit'}.`;
+  }
   const broken =
     privateNewlyBroken === 0 ? 'none of them would break a limit' : `${privateNewlyBroken} of them would break a limit`;
-  return `And ${counted(privateCount, 'private design')} would move, ${broken}.`;
+  return `And ${privateCount} private designs would move, ${broken}.`;
 }
 
 export function counted(count: number, noun: string): string {
