@@ -93,7 +93,7 @@ function circles(edges: ReadonlyMap<string, readonly string[]>): readonly (reado
     }
     if (low.get(node) !== index.get(node)) return;
     const circle = stack.splice(stack.indexOf(node));
-    if (circle.length > 1 || edges.get(node)?.includes(node)) found.push(circle.sort());
+    if (circle.length > 1 || edges.get(node)?.includes(node)) found.push(circle);
   };
   for (const node of edges.keys()) if (!index.has(node)) visit(node);
   return found;
