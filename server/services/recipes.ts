@@ -77,6 +77,7 @@ async function loadRows(db: Db, person: Person, now: Date, where: SQL | undefine
       state: recipeVersion.state,
       publishedAt: recipeVersion.publishedAt,
       reviewDue: recipeVersion.reviewDue,
+      signedBy: user.name,
       front: sql<FrontMatter>`${recipeVersion.document} -> 'front'`,
       owners: sql<readonly string[]>`coalesce((select jsonb_agg(u.name order by u.name) from recipe_owner o
         join "user" u on u.id = o.user_id where o.recipe_id = ${recipe.id}), '[]'::jsonb)`,
@@ -85,6 +86,7 @@ async function loadRows(db: Db, person: Person, now: Date, where: SQL | undefine
     })
     .from(recipe)
     .innerJoin(recipeVersion, eq(recipeVersion.recipeId, recipe.id))
+    .leftJoin(user, eq(user.id, recipeVersion.signedBy))
     .where(where)
     .orderBy(recipe.id, ...currentFirst);
   const today = dateIn((await readTeam(db)).timeZone, now);

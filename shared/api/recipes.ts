@@ -27,6 +27,8 @@ export const recipeRow = z.strictObject({
   reviewDue: calendarDate.nullable(),
   reviewOverdue: z.boolean(),
   owners: z.array(z.string()),
+  /** Who signed off the version of this row; null while nobody of the team has. */
+  signedBy: z.string().nullable(),
   /** `supplied` until an editor of the team signs it off. */
   origin: z.enum(['team', 'supplied']),
   designs: z.int(),

@@ -27,6 +27,7 @@ const recipe: RecipeRow = {
   reviewDue: '2027-05-18',
   reviewOverdue: false,
   owners: [],
+  signedBy: null,
   origin: 'supplied',
   designs: 0,
 };
@@ -303,6 +304,7 @@ describe('the list of recipes', () => {
     reviewOverdue: true,
     origin: 'team',
     owners: ['Ines Varga'],
+    signedBy: 'Tomas Okoye',
   };
   const list = { 'GET /api/recipes': { body: { recipes: [recipe, splitter] } } };
   const titles = () => screen.getAllByRole('rowheader').map((head) => within(head).getByRole('link').textContent);
@@ -312,6 +314,8 @@ describe('the list of recipes', () => {
     expect(await screen.findByRole('heading', { level: 2, name: 'Make a reference point' })).toBeTruthy();
     expect(titles()).toEqual(['Rail splitter', recipe.title]);
     expect(screen.getByText('Caution: battery')).toBeTruthy();
+    expect(screen.getByText('Tomas Okoye')).toBeTruthy();
+    expect(screen.getByText('not by your team')).toBeTruthy();
     expect(screen.getByText(', overdue')).toBeTruthy();
   });
 

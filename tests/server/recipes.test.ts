@@ -27,6 +27,7 @@ describe('the list of recipes', () => {
       summary: 'What averager does.',
       state: 'published',
       owners: [flow.author.name],
+      signedBy: flow.editor.name,
       origin: 'team',
       designs: 0,
       reviewDue: '2028-03-02',

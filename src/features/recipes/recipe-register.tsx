@@ -45,7 +45,7 @@ function RecipeLine({ row }: { row: RecipeRow }) {
         <small>{dayText(row.publishedAt)}</small>
       </td>
       <td data-head="Signed off">
-        {row.origin === 'supplied' ? 'not by your team' : row.owners.join(', ') || 'by your team'}
+        {row.signedBy ?? 'not by your team'}
         <small>
           {row.reviewDue === null ? 'no review date' : `due ${calendarDayText(row.reviewDue)}`}
           {row.reviewOverdue && <b>, overdue</b>}
