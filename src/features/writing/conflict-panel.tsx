@@ -1,4 +1,5 @@
 import { useMemo, useState } from 'react';
+import { usePerson } from '../../lib/session.ts';
 import { announce } from '../../ui/announce.tsx';
 import { Button } from '../../ui/button.tsx';
 import { CopyButton } from '../../ui/copy-button.tsx';
@@ -16,6 +17,7 @@ export interface ConflictPanelProps {
 /** The draft moved while this person typed: both texts side by side, and neither is lost whatever is chosen. */
 export function ConflictPanel({ conflict, mine, onEnd }: ConflictPanelProps) {
   const { saved, hash } = conflict;
+  const isOwn = usePerson().name === saved.savedBy;
   const rows = useMemo(() => textRows(saved.text, mine), [saved.text, mine]);
   const [chosen, setChosen] = useState<ReadonlyMap<number, Side>>(() => likelySides(rows ?? [], saved.baseText));
   const base: DraftBase = { revision: saved.revision, hash };
@@ -37,7 +39,9 @@ export function ConflictPanel({ conflict, mine, onEnd }: ConflictPanelProps) {
   );
   return (
     <section className="conflict" aria-labelledby="conflict-head">
-      <h2 id="conflict-head">{saved.savedBy} saved this draft while you were typing</h2>
+      <h2 id="conflict-head">
+        {isOwn ? 'You saved this draft elsewhere' : `${saved.savedBy} saved this draft`} while you were typing here
+      </h2>
       <p>
         Nothing is lost: both texts are here, and yours is also kept under “Earlier saves”. Choose at each difference,
         or take one text whole.

@@ -44,7 +44,10 @@ export function WriteColumns({ text, facts, label, isReadOnly = false, onText, e
           options={[
             { value: 'text', label: 'Text' },
             { value: 'page', label: 'Live page' },
-            { value: 'checks', label: live.diagnostics.length === 0 ? 'Checks' : `Checks: ${countWords(live.diagnostics)}` },
+            {
+              value: 'checks',
+              label: live.diagnostics.length === 0 ? 'Checks' : `Checks: ${countWords(live.diagnostics)}`,
+            },
           ]}
           value={view}
           onChange={setView}

@@ -3,7 +3,7 @@ import { defaultKeymap, history, historyKeymap } from '@codemirror/commands';
 import { bracketMatching, indentService } from '@codemirror/language';
 import { type Diagnostic, lintGutter, setDiagnostics } from '@codemirror/lint';
 import { highlightSelectionMatches, searchKeymap } from '@codemirror/search';
-import { Annotation, EditorState, type Extension, Prec, type Transaction } from '@codemirror/state';
+import { Annotation, EditorState, type Extension, Prec, Transaction } from '@codemirror/state';
 import {
   drawSelection,
   EditorView,
@@ -93,7 +93,9 @@ export function mountEditor(settings: EditorSettings): MountedEditor {
     goTo,
     replace: (text, asEdit) => {
       const change = smallestChange(view.state.doc.toString(), text);
-      view.dispatch({ changes: change, ...(asEdit ? {} : { annotations: fromServer.of(true) }) });
+      // What came from the server is not the person's to undo.
+      const annotations = asEdit ? [] : [fromServer.of(true), Transaction.addToHistory.of(false)];
+      view.dispatch({ changes: change, annotations });
     },
     text: () => view.state.doc.toString(),
     focus: () => view.focus(),
@@ -105,10 +107,9 @@ function surface({ label, isReadOnly }: EditorSettings): readonly Extension[] {
   const nonce = document.querySelector('meta[name="csp-nonce"]')?.getAttribute('content');
   return [
     ...(nonce ? [EditorView.cspNonce.of(nonce)] : []),
-    EditorView.contentAttributes.of({ 'aria-label': label, autocapitalize: 'off', spellcheck: 'true' }),
+    EditorView.contentAttributes.of({ 'aria-label': label, autocapitalize: 'off', spellcheck: 'true', tabindex: '0' }),
     EditorState.readOnly.of(isReadOnly),
     EditorView.editable.of(!isReadOnly),
-    isReadOnly ? EditorView.contentAttributes.of({ tabindex: '0' }) : [],
     lineNumbers(),
     lintGutter(),
     history(),
