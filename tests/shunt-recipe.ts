@@ -2,13 +2,15 @@
 export function shuntText({
   gain,
   words = 'A shunt turns current into a small voltage.',
+  slug = 'shunt-reading',
 }: {
   gain: 20 | 25;
   words?: string;
+  slug?: string;
 }) {
   return `---
 title: Shunt reading for the works car
-slug: shunt-reading
+slug: ${slug}
 summary: Turns the motor current of the works car into a voltage for the meter.
 hazards: [none]
 ---
