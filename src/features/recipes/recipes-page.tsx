@@ -28,7 +28,7 @@ export function RecipesPage() {
       <p>Words search names, purposes, topics and labels. A letter amiss is forgiven.</p>
       {mayWrite && (
         <p className="mt-4">
-          <Link to={paths.start()}>Write a recipe</Link>
+          <Link to={paths.start()}>Drafts, and a new recipe</Link>
         </p>
       )}
     </MarginNote>

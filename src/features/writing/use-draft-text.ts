@@ -32,10 +32,9 @@ function readMessage(message: unknown): TabMessage | null {
 
 /** A save may be acknowledged after its page was left; the page that is open now hears of it all the same. */
 function tellKept(name: string, open: Channel<TabMessage> | null, revision: number): void {
-  if (open !== null) return open.tell({ kind: 'kept', revision });
-  const brief = openChannel<TabMessage>(name, readMessage, () => undefined);
-  brief.tell({ kind: 'kept', revision });
-  brief.close();
+  const channel = open ?? openChannel<TabMessage>(name, readMessage, () => undefined);
+  channel.tell({ kind: 'kept', revision });
+  if (open === null) channel.close();
 }
 
 export interface DraftText {
