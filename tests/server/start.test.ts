@@ -1,13 +1,22 @@
 import { type ChildProcess, spawn, spawnSync } from 'node:child_process';
-import { existsSync, mkdtempSync, readFileSync, rmSync, statSync, writeFileSync } from 'node:fs';
+import { cpSync, existsSync, mkdtempSync, readdirSync, readFileSync, rmSync, statSync, writeFileSync } from 'node:fs';
 import { createServer } from 'node:net';
 import { networkInterfaces, tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { afterEach, beforeEach, describe, expect, test } from 'vitest';
+import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, test } from 'vitest';
 import { RELEASE_HEADER } from '#api';
 import { readEnv, StartError } from '../../server/env.ts';
 import { nodeProblem } from '../../server/node-version.mjs';
 import { type BuiltServer, freePort, startBuilt } from '../e2e/server.ts';
+
+/** Data of a first start that was stopped in good order: most tests begin with a copy of it. */
+const original = mkdtempSync(join(tmpdir(), 'quadrille-started-'));
+beforeAll(async () => {
+  const server = await startBuilt(join(original, 'data'), await freePort());
+  expect(await server.stop()).toBe(0);
+}, 600_000);
+afterAll(() => rmSync(original, { recursive: true, force: true }));
+const useStartedData = () => cpSync(join(original, 'data'), data, { recursive: true });
 
 let folder: string;
 let data: string;
@@ -38,7 +47,7 @@ function runBuilt(words: readonly string[], variables: Readonly<Record<string, s
 
 const mode = (path: string) => (statSync(path).mode & 0o777).toString(8);
 
-describe('the first start', { timeout: 180_000 }, () => {
+describe('the first start', { timeout: 600_000 }, () => {
   test('makes a directory that only its owner opens, loads the starter recipes, and prints the set-up link', async () => {
     const server = await start();
     expect([mode(data), mode(join(data, 'secret')), mode(join(data, 'lock')), mode(join(data, 'socket'))]).toEqual([
@@ -57,6 +66,7 @@ describe('the first start', { timeout: 180_000 }, () => {
   });
 
   test('is the only one: a second start on the same data ends with a line that names the holder', async () => {
+    useStartedData();
     const server = await start();
     const second = runBuilt([]);
     expect([second.status, second.stdout]).toEqual([1, '']);
@@ -67,8 +77,9 @@ describe('the first start', { timeout: 180_000 }, () => {
   });
 });
 
-describe('stopping and starting again', { timeout: 180_000 }, () => {
+describe('stopping and starting again', { timeout: 600_000 }, () => {
   test('by SIGTERM closes in good order and leaves no lock; the next start makes a new set-up link', async () => {
+    useStartedData();
     const first = await start();
     expect(await first.stop('SIGTERM')).toBe(0);
     expect(existsSync(join(data, 'lock'))).toBe(false);
@@ -78,6 +89,7 @@ describe('stopping and starting again', { timeout: 180_000 }, () => {
   });
 
   test('after kill -9 takes the lock over', async () => {
+    useStartedData();
     const first = await start();
     await first.stop('SIGKILL');
     expect(existsSync(join(data, 'lock'))).toBe(true);
@@ -86,12 +98,13 @@ describe('stopping and starting again', { timeout: 180_000 }, () => {
   });
 
   test('by SIGTERM to npm reaches the server', async () => {
+    useStartedData();
     const port = await freePort();
     const npm = spawn('npm', ['start'], {
       env: { ...process.env, PORT: String(port), QUADRILLE_DATA: data },
       stdio: ['ignore', 'pipe', 'inherit'],
     });
-    await untilPrinted(npm, 'Quadrille is at');
+    await untilPrinted(npm, /^Quadrille is at/m);
     const ended = new Promise((resolve) => npm.once('exit', resolve));
     npm.kill('SIGTERM');
     await ended;
@@ -100,19 +113,21 @@ describe('stopping and starting again', { timeout: 180_000 }, () => {
   });
 });
 
-function untilPrinted(child: ChildProcess, words: string): Promise<void> {
+/** What a process printed up to the words. */
+function untilPrinted(child: ChildProcess, words: RegExp): Promise<string> {
   return new Promise((resolve, reject) => {
     let text = '';
     child.stdout?.on('data', (chunk: Buffer) => {
       text += chunk.toString('utf8');
-      if (text.includes(words)) resolve();
+      if (words.test(text)) resolve(text);
     });
-    child.once('exit', () => reject(new Error(`ended before it printed "${words}":\n${text}`)));
+    child.once('exit', () => reject(new Error(`ended before it printed ${String(words)}:\n${text}`)));
   });
 }
 
-describe('a start that cannot be', { timeout: 180_000 }, () => {
+describe('a start that cannot be', { timeout: 600_000 }, () => {
   test('for a taken port says so in one line', async () => {
+    useStartedData();
     const other = createServer();
     await new Promise<void>((resolve) => other.listen(0, '127.0.0.1', resolve));
     const address = other.address();
@@ -153,8 +168,9 @@ describe('a start that cannot be', { timeout: 180_000 }, () => {
   });
 });
 
-describe('the pages of a built server', { timeout: 180_000 }, () => {
+describe('the pages of a built server', { timeout: 600_000 }, () => {
   test('carry the nonce of their policy and the release, and are not stored; a missing asset is not the page', async () => {
+    useStartedData();
     const server = await start();
     const page = await fetch(`${server.url}/recipes/anything`);
     const html = await page.text();
@@ -178,6 +194,7 @@ describe('the pages of a built server', { timeout: 180_000 }, () => {
   });
 
   test('are served to another machine by its public address, and changes are taken from there alone', async () => {
+    useStartedData();
     const outside = Object.values(networkInterfaces())
       .flatMap((list) => list ?? [])
       .find((one) => one.family === 'IPv4' && !one.internal)?.address;
@@ -203,8 +220,9 @@ describe('the pages of a built server', { timeout: 180_000 }, () => {
   });
 });
 
-describe('commands on the server’s machine', { timeout: 180_000 }, () => {
+describe('commands on the server’s machine', { timeout: 600_000 }, () => {
   test('reach the running server, and the data itself when none runs', async () => {
+    useStartedData();
     const server = await start();
     const nobody = 'Nobody in the team has the address no@railway.example, and nobody is invited there.\n';
     expect(runBuilt(['admin', 'link', 'no@railway.example'])).toEqual({ status: 1, stdout: '', stderr: nobody });
@@ -219,6 +237,38 @@ describe('commands on the server’s machine', { timeout: 180_000 }, () => {
     expect([restored.status, restored.stderr]).toEqual([0, '']);
     expect(mode(place)).toBe('700');
     expect(runBuilt(['restore', quiet], { QUADRILLE_DATA: place }).stderr).toContain(`${place} is not empty`);
+  });
+});
+
+describe('the demo', { timeout: 600_000 }, () => {
+  test('prints an account for each role that can sign in, and throws its data away when it stops', async () => {
+    const port = await freePort();
+    const demo = spawn(process.execPath, ['dist/server/main.js', 'demo'], {
+      env: { ...process.env, NODE_ENV: 'production', PORT: String(port), TMPDIR: folder },
+      stdio: ['ignore', 'pipe', 'inherit'],
+    });
+    const text = await untilPrinted(demo, /^admin .*\n/m);
+    const accounts = [...text.matchAll(/^(reader|author|editor|admin) +(\S+@\S+) +(\S+)$/gm)];
+    expect(accounts.map(([, role]) => role)).toEqual(['reader', 'author', 'editor', 'admin']);
+    const url = `http://localhost:${port}`;
+    for (const [, role, email, password] of accounts) {
+      const signedIn = await fetch(`${url}/api/auth/sign-in/email`, {
+        method: 'POST',
+        headers: { origin: url, 'content-type': 'application/json' },
+        body: JSON.stringify({ email, password }),
+      });
+      const cookie = signedIn.headers
+        .getSetCookie()
+        .map((one) => one.split(';', 1)[0])
+        .join('; ');
+      const me = await (await fetch(`${url}/api/me`, { headers: { cookie } })).json();
+      expect([signedIn.status, me.person?.role]).toEqual([200, role]);
+    }
+    expect(readdirSync(folder).filter((name) => name.startsWith('quadrille-demo-'))).toHaveLength(1);
+    const ended = new Promise((resolve) => demo.once('exit', resolve));
+    demo.kill('SIGTERM');
+    expect(await ended).toBe(0);
+    expect(readdirSync(folder).filter((name) => name.startsWith('quadrille-demo-'))).toEqual([]);
   });
 });
 
