@@ -47,13 +47,15 @@ export function Button(props: ButtonProps) {
       {acting === undefined ? children : <TwoLabels rest={children} acting={acting} isActing={isActing} />}
     </button>
   );
-  if (cannot === undefined) return button;
+  // The same tree with and without a reason: a button that had the focus when the reason came or went keeps it.
   return (
-    <span className="inline-grid justify-items-start gap-1">
+    <span className={cannot === undefined ? 'contents' : 'inline-grid justify-items-start gap-1'}>
       {button}
-      <span id={reasonId} className="note">
-        {cannot}
-      </span>
+      {cannot !== undefined && (
+        <span id={reasonId} className="note">
+          {cannot}
+        </span>
+      )}
     </span>
   );
 }

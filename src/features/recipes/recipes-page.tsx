@@ -217,7 +217,7 @@ function fromSearchToList(event: KeyboardEvent, list: HTMLElement | null): void 
 function betweenGroups(event: KeyboardEvent, list: HTMLElement | null): void {
   if (event.defaultPrevented || (event.key !== 'ArrowDown' && event.key !== 'ArrowUp')) return;
   const links = rowLinks(list);
-  const at = links.findIndex((link) => link.matches(':focus'));
+  const at = links.findIndex((link) => link === document.activeElement);
   if (at < 0) return;
   event.preventDefault();
   const next = links[at + (event.key === 'ArrowDown' ? 1 : -1)];
