@@ -216,8 +216,8 @@ function fromSearchToList(event: KeyboardEvent, list: HTMLElement | null): void 
 /** Past the end of one group's register the arrow keys go on in the next. */
 function betweenGroups(event: KeyboardEvent, list: HTMLElement | null): void {
   if (event.defaultPrevented || (event.key !== 'ArrowDown' && event.key !== 'ArrowUp')) return;
-  const links = rowLinks(list);
-  const at = links.findIndex((link) => link === document.activeElement);
+  const links: readonly (HTMLElement | null)[] = rowLinks(list);
+  const at = document.activeElement instanceof HTMLElement ? links.indexOf(document.activeElement) : -1;
   if (at < 0) return;
   event.preventDefault();
   const next = links[at + (event.key === 'ArrowDown' ? 1 : -1)];
