@@ -1,5 +1,5 @@
 import { QueryClientProvider } from '@tanstack/react-query';
-import { render, screen, waitFor, within } from '@testing-library/react';
+import { configure, render, screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { createMemoryRouter, Link, Outlet, RouterProvider } from 'react-router-dom';
 import { describe, expect, test } from 'vitest';
@@ -14,6 +14,9 @@ import { shuntText } from '../shunt-recipe.ts';
 import { fakeServer, type Heard, type Reply } from './fake-server.ts';
 import { AUTHOR, meAs, READER } from './review-fixtures.ts';
 import { compileText } from './starter-documents.ts';
+
+// Parts of a page are loaded when they are wanted; on a busy machine that takes longer than the default second.
+configure({ asyncUtilTimeout: 10_000 });
 
 const ID = '5c3c1c86-7d8e-4f6a-9d15-0f3b5f7d2a01';
 const COPY = '5c3c1c86-7d8e-4f6a-9d15-0f3b5f7d2a02';

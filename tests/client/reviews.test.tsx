@@ -1,5 +1,5 @@
 import { QueryClientProvider } from '@tanstack/react-query';
-import { render, screen, within } from '@testing-library/react';
+import { configure, render, screen, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { createMemoryRouter, Outlet, RouterProvider } from 'react-router-dom';
 import { describe, expect, test } from 'vitest';
@@ -24,6 +24,9 @@ import {
   reviewPage,
   TICKS,
 } from './review-fixtures.ts';
+
+// Parts of a page are loaded when they are wanted; on a busy machine that takes longer than the default second.
+configure({ asyncUtilTimeout: 10_000 });
 
 interface Settings {
   readonly me?: Me;
