@@ -12,39 +12,40 @@ const HEAP_MB = 256;
 
 export interface CompilePool {
   compile(text: string, facts: CompileFacts): Promise<Compiled>;
+  /** Starts the threads before the first text comes. */
+  warm(): void;
   close(): Promise<void>;
 }
 
 /**
  * Compiles off the main thread, two texts at a time. The limit counts from when a text's turn comes; a thread that exceeds it is ended, and
- * the next text gets a new one. Answers are kept by text and facts.
+ * the next text gets a new one. Answers are kept by text and facts. What goes wrong in a thread that nobody waits for is reported.
  */
-export function createCompilePool(script: URL, limitMs: number = COMPILE_LIMIT_MS): CompilePool {
-  const pool = new Piscina({
-    filename: fileURLToPath(script),
-    minThreads: THREADS,
-    maxThreads: THREADS,
-    resourceLimits: { maxOldGenerationSizeMb: HEAP_MB },
-    // Sources in TypeScript while developing and in tests; the build is JavaScript.
-    execArgv: script.pathname.endsWith('.ts') ? ['--import', 'tsx'] : [],
-  });
+export function createCompilePool(
+  script: URL,
+  report: (error: Error) => void,
+  limitMs: number = COMPILE_LIMIT_MS,
+): CompilePool {
+  // Not before they are asked for: a server that starts has other work for its processors.
+  let started: Threads | undefined;
+  const threads = () => {
+    started ??= startThreads(script, report);
+    return started;
+  };
   const kept = new Map<string, Promise<Compiled>>();
-  // The limit is for texts, not for starting threads on a busy machine: the first texts wait until the threads have compiled an empty one.
-  const warmUp = (threads: number) =>
-    Promise.allSettled(Array.from({ length: threads }, () => pool.run({ text: '', facts: {} })));
-  let warm = warmUp(THREADS);
   const turns = createTurns(THREADS);
 
   async function compileNow(text: string, facts: CompileFacts): Promise<Compiled> {
     await turns.take();
-    await warm;
+    const { pool, warmUp } = threads();
+    await threads().warm;
     const stop = new AbortController();
     const timer = setTimeout(() => stop.abort(), limitMs);
     try {
       return await pool.run({ text, facts }, { signal: stop.signal });
     } catch (error) {
       if (stop.signal.aborted || isOutOfMemory(error)) {
-        warm = warmUp(1);
+        started = { pool, warmUp, warm: warmUp(1) };
         return tooSlow(limitMs);
       }
       throw error;
@@ -63,8 +64,33 @@ export function createCompilePool(script: URL, limitMs: number = COMPILE_LIMIT_M
       keep(kept, key, compiled);
       return compiled;
     },
-    close: () => pool.destroy(),
+    warm: () => void threads(),
+    close: async () => started?.pool.destroy(),
   };
+}
+
+interface Threads {
+  readonly pool: Piscina;
+  /** The limit is for texts, not for starting threads on a busy machine: texts wait until the threads have compiled an empty one. */
+  readonly warm: Promise<unknown>;
+  readonly warmUp: (threads: number) => Promise<unknown>;
+}
+
+function startThreads(script: URL, report: (error: Error) => void): Threads {
+  const pool = new Piscina({
+    // Sources in TypeScript while developing and in tests; the build is JavaScript.
+    filename: fileURLToPath(script.pathname.endsWith('.ts') ? new URL('./source-thread.mjs', import.meta.url) : script),
+    workerData: { script: script.href },
+    minThreads: THREADS,
+    maxThreads: THREADS,
+    resourceLimits: { maxOldGenerationSizeMb: HEAP_MB },
+  });
+  // A thread that was ended for its time may still run out of memory on its way out: nobody waits for it, and without a listener the
+  // process would end.
+  pool.on('error', report);
+  const warmUp = (threads: number) =>
+    Promise.allSettled(Array.from({ length: threads }, () => pool.run({ text: '', facts: {} })));
+  return { pool, warmUp, warm: warmUp(THREADS) };
 }
 
 /** Keeps an answer, the oldest making room; what the limit cut off or a fault ended is forgotten, so that the next try compiles. */

@@ -45,7 +45,7 @@ export async function startServer(options: StartOptions): Promise<Running> {
   const { env, place, log } = options;
   const release = options.developedPages ? `${place.version}+dev` : releaseOf(place.version, place.builtPages);
   const directory = await openDataDirectory(env.dataDirectory, place, { secret: env.secret, release, now: new Date() });
-  const pool = createCompilePool(place.compileThread);
+  const pool = createCompilePool(place.compileThread, (err) => log.warn({ err }, 'a compile thread ended'));
   const http = createServer();
   try {
     const frame = createFrame({ env, directory, pool, release, log });
@@ -74,6 +74,7 @@ export async function startServer(options: StartOptions): Promise<Running> {
     if (closeSocket === null) log.warn('the path of the data directory is too long for a local socket');
     const stopJobs = startJobs(frame);
     await search.build(frame.db);
+    pool.warm();
     const setUp = await inTransaction(frame, operator(frame), async (context) => ok(await renewSetUpLink(context)));
     return {
       url: env.publicUrl,

@@ -34,9 +34,10 @@ async function actOffline(
 ): Promise<Result<string, string>> {
   const release = place.version;
   const directory = await openDataDirectory(env.dataDirectory, place, { secret: env.secret, release, now: new Date() });
-  const pool = createCompilePool(place.compileThread);
+  const log = pino({ level: 'silent' });
+  const pool = createCompilePool(place.compileThread, (err) => log.warn({ err }, 'a compile thread ended'));
   try {
-    const frame = createFrame({ env, directory, pool, release, log: pino({ level: 'silent' }) });
+    const frame = createFrame({ env, directory, pool, release, log });
     return await localActs(frame, place)[act](argument);
   } finally {
     await pool.close();
