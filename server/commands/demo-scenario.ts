@@ -32,11 +32,15 @@ export async function playScenario(url: string, folder: string, team: Record<'au
   await keepDesign(reader, 'difference-amplifier-with-gain', 'Lamp circuit pick-off', 'Signal hut', { V_d: '±300 mV' });
 
   const { id } = await author.send('drafts.start', {}, { requestId: makeId(), changes: slug });
-  await author.send('drafts.saveText', { id }, {
-    saveId: makeId(),
-    baseRevision: 0,
-    text: text('shed-thermometer-changed.mdx'),
-  });
+  await author.send(
+    'drafts.saveText',
+    { id },
+    {
+      saveId: makeId(),
+      baseRevision: 0,
+      text: text('shed-thermometer-changed.mdx'),
+    },
+  );
   await sendForReview(author, id, 'More volts per kelvin: the logger has only 8 bits.');
 }
 
