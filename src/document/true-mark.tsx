@@ -1,3 +1,4 @@
+import './document.css';
 import type { ReactNode } from 'react';
 
 /** A check's answer: tick or cross, then the word. */

@@ -45,7 +45,7 @@ describe('a request', () => {
     const problem = problemBody.parse(JSON.parse(answer.text));
     expect(problem.code).toBe('invalid');
     expect(problem.fields).toEqual([
-      { field: 'email', message: 'Unexpected text, expected an e-mail address.' },
+      { field: 'email', message: 'Write an address like name@example.org.' },
       { field: 'colour', message: 'Unexpected field.' },
     ]);
     expect(await noticesIn(fresh)).toBe(0);

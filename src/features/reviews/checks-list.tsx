@@ -1,5 +1,4 @@
 import type { ReviewPage } from '#api';
-import '../../document/document.css';
 import { TrueMark } from '../../document/true-mark.tsx';
 import { counted } from './number-words.ts';
 

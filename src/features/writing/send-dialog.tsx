@@ -11,9 +11,9 @@ import { Button } from '../../ui/button.tsx';
 import { Dialog, DialogActions } from '../../ui/dialog.tsx';
 import { TextArea } from '../../ui/field.tsx';
 import type { DraftBase, DraftConflict } from './draft-save.ts';
-import { whyNotSend } from './send-panel.tsx';
 import type { LiveCompiled } from './use-compiled.ts';
 import type { DraftText } from './use-draft-text.ts';
+import { whyNotSend } from './why-not-send.ts';
 
 const LONGEST_NOTE = 500;
 
