@@ -65,8 +65,10 @@ function mountHealth(app: Express, frame: Frame): void {
 
 function mountDocuments(app: Express, frame: Frame): void {
   const { release } = frame.settings;
-  const document = openapiDocument(release);
+  // Made when it is first asked for: it took a sixth of the time of a start.
+  let document: ReturnType<typeof openapiDocument> | undefined;
   app.get('/api/openapi.json', function openapi(_req, res) {
+    document ??= openapiDocument(release);
     res.json(document);
   });
   app.get('/api/docs', function docs(_req, res) {
