@@ -1,5 +1,5 @@
 import type * as z from 'zod';
-import { CONTRACT, type Endpoint, type Failure, type FieldError, type RouteName } from '#api';
+import { CONTRACT, type Endpoint, type Failure, type FieldError, fieldWords, type RouteName } from '#api';
 import { fail, ok, type Result } from '#text';
 
 interface Parts {
@@ -41,41 +41,4 @@ function needOthers(fields: readonly FieldError[]): Failure {
 function fieldErrors(issue: z.core.$ZodIssue): FieldError[] {
   if (issue.code !== 'unrecognized_keys') return [{ field: issue.path.join('.'), message: issue.message }];
   return issue.keys.map((key) => ({ field: [...issue.path, key].join('.'), message: 'Unexpected field.' }));
-}
-
-const FORMATS: Readonly<Record<string, string>> = {
-  email: 'an e-mail address',
-  url: 'an address such as https://bench.example',
-  uuid: 'an id',
-  datetime: 'an instant such as 2026-03-14T09:30:00.000Z',
-  date: 'a date such as 2026-03-14',
-};
-
-/** Speaks where the contract gives no words of its own. */
-function fieldWords(issue: z.core.$ZodRawIssue): string | undefined {
-  switch (issue.code) {
-    case 'invalid_type':
-      return issue.input === undefined
-        ? 'This field is needed.'
-        : `Unexpected ${nameOf(issue.input)}, expected ${issue.expected}.`;
-    case 'invalid_format':
-      return `Unexpected text, expected ${FORMATS[issue.format] ?? 'another form'}.`;
-    case 'invalid_value':
-      return `Unexpected value, expected ${issue.values.map(String).join(', ')}.`;
-    case 'too_small':
-      return issue.origin === 'string'
-        ? `Use at least ${issue.minimum} characters.`
-        : `Expected at least ${issue.minimum}.`;
-    case 'too_big':
-      return issue.origin === 'string'
-        ? `Use at most ${issue.maximum} characters.`
-        : `Expected at most ${issue.maximum}.`;
-    default:
-      return undefined;
-  }
-}
-
-function nameOf(value: unknown): string {
-  if (value === null) return 'nothing';
-  return Array.isArray(value) ? 'list' : typeof value;
 }

@@ -8,6 +8,7 @@ export * from './designs.ts';
 export * from './drafts.ts';
 export type { Endpoint, PersonRef } from './endpoint.ts';
 export { type Failure, type FieldError, type ProblemBody, problemBody } from './failures.ts';
+export { fieldWords } from './field-words.ts';
 export * from './people.ts';
 export { ACTIONS, type Action, mayDo, ROLES, type Role } from './permissions.ts';
 export * from './recipes.ts';

@@ -35,6 +35,7 @@ export function Button(props: ButtonProps) {
   const button = (
     <button
       type="button"
+      onMouseDown={rest.type === 'submit' ? keepFocusInField : undefined}
       {...rest}
       className={[buttonClass(kind, small), className].filter(Boolean).join(' ')}
       onClick={press}
@@ -58,6 +59,14 @@ export function Button(props: ButtonProps) {
       )}
     </span>
   );
+}
+
+/**
+ * A press on a submit button does not leave the field before: what is said on leaving it would move the button from under
+ * the pointer, and the press would be lost. Sending checks every field anyway.
+ */
+function keepFocusInField(event: MouseEvent<HTMLButtonElement>): void {
+  event.preventDefault();
 }
 
 function TwoLabels({ rest, acting, isActing }: { rest: ReactNode; acting: string; isActing: boolean }) {

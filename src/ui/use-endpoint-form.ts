@@ -2,7 +2,7 @@ import { zodResolver } from '@hookform/resolvers/zod';
 import { type FormEvent, useState } from 'react';
 import { type DefaultValues, type FieldErrors, type FieldValues, type Path, useForm } from 'react-hook-form';
 import type * as z from 'zod';
-import type { FieldError } from '#api';
+import { type FieldError, fieldWords } from '#api';
 import type { Result } from '#text';
 import { announce } from './announce.tsx';
 
@@ -28,7 +28,7 @@ export function useEndpointForm<Input extends FieldValues, Output extends FieldV
   settings: EndpointForm<Input, Output, Answer, F>,
 ) {
   const form = useForm<Input, unknown, Output>({
-    resolver: zodResolver<Input, unknown, Output>(settings.schema),
+    resolver: zodResolver<Input, unknown, Output>(settings.schema, { error: fieldWords }),
     defaultValues: settings.defaultValues,
     mode: 'onBlur',
     reValidateMode: 'onBlur',

@@ -8,7 +8,10 @@ import { Button } from '../../src/ui/button.tsx';
 import { TextField } from '../../src/ui/field.tsx';
 import { type Refusal, useEndpointForm } from '../../src/ui/use-endpoint-form.ts';
 
-const schema = z.object({ name: z.string().min(1, 'Write a name.'), city: z.string().min(3, 'Use 3 characters.') });
+const schema = z.object({
+  name: z.string().min(1, 'Write a name.'),
+  city: z.string().min(3, 'Use 3 characters.').max(20),
+});
 type Values = z.infer<typeof schema>;
 
 function Form({ send }: { send: (values: Values) => Promise<Result<null, Refusal>> }) {
@@ -58,6 +61,21 @@ describe('the one behaviour of forms', () => {
     await user.tab();
     expect(await screen.findByText('Use 3 characters.')).toBeTruthy();
     await user.type(city, 'c');
+    expect(screen.queryByText('Use 3 characters.')).toBeNull();
+  });
+
+  test('speaks of a limit without words of its own as the server does', async () => {
+    const { city, user } = open();
+    await user.type(city, 'x'.repeat(21));
+    await user.tab();
+    expect(await screen.findByText('Use at most 20 characters.')).toBeTruthy();
+  });
+
+  test('does not leave the field when its button is pressed, since words that appear then would move the button away', async () => {
+    const { city, user } = open();
+    await user.type(city, 'ab');
+    await user.pointer({ keys: '[MouseLeft>]', target: screen.getByRole('button', { name: 'Keep' }) });
+    expect(document.activeElement).toBe(city);
     expect(screen.queryByText('Use 3 characters.')).toBeNull();
   });
 
