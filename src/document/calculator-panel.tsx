@@ -8,6 +8,7 @@ import { LimitRows } from './limit-rows.tsx';
 import { KeyResultRow, ResultRows } from './result-rows.tsx';
 import { useSpokenResults } from './spoken-results.ts';
 import type { CalculatorState, CalculatorsState } from './use-calculators.ts';
+import { useFocusAfter } from './use-focus-after.ts';
 
 export interface CalculatorPanelProps {
   readonly calculators: CalculatorsState;
@@ -79,26 +80,38 @@ function Panel({ calculators, state, heading, standing, actions }: PanelProps) {
 
 function PutBack({ calculators, state }: { calculators: CalculatorsState; state: CalculatorState }) {
   const { undo, redo } = calculators;
+  const { box, goTo } = useFocusAfter<HTMLParagraphElement>();
   if (state.typedOver === 0 && undo === null && redo === null) return null;
+  // The last step takes its button away; the way back from it is there.
+  const travel = (step: () => void, back: string) => () => {
+    step();
+    goTo(back);
+  };
   const count = state.typedOver === 1 ? '1 field is yours' : `${state.typedOver} fields are yours`;
   return (
-    <p className="given-acts">
+    <p ref={box} className="given-acts">
       {state.typedOver > 0 && (
         <>
           <span>{count};</span>{' '}
-          <Button kind="text" onClick={() => calculators.putBack(state.id)}>
+          <Button
+            kind="text"
+            onClick={() => {
+              calculators.putBack(state.id);
+              goTo('.given-undo');
+            }}
+          >
             put back the recipe’s values
           </Button>
         </>
       )}
       <span className="given-travel">
         {undo !== null && (
-          <Button kind="text" onClick={undo}>
+          <Button kind="text" className="given-undo" onClick={travel(undo, '.given-redo')}>
             Undo
           </Button>
         )}
         {redo !== null && (
-          <Button kind="text" onClick={redo}>
+          <Button kind="text" className="given-redo" onClick={travel(redo, '.given-undo')}>
             Redo
           </Button>
         )}

@@ -4,6 +4,7 @@ import { LimitMark } from '../ui/marks.tsx';
 import { Letter } from './letter.tsx';
 import type { CalculatorState } from './use-calculators.ts';
 import { useCures } from './use-cures.ts';
+import { useFocusAfter } from './use-focus-after.ts';
 
 /** Limits in the order of their urgency; equal ones as the author wrote them. */
 const URGENCY = {
@@ -32,12 +33,14 @@ export function LimitRows({ state, onChange }: LimitRowsProps) {
   const { linked, inputs, evaluation } = state;
   const cures = useCures(state);
   const [tried, setTried] = useState<Tried | null>(null);
+  const { box, goTo } = useFocusAfter<HTMLDivElement>();
   if (evaluation.limits.length === 0) return null;
   const stands = tried !== null && inputs.fields.get(tried.cure.name)?.text === tried.cure.to ? tried : null;
   const attempt = (limit: string, cure: Cure) => {
     const field = inputs.fields.get(cure.name);
     setTried({ limit, cure, before: field?.origin === 'typed' ? field.text : null });
     onChange(cure.name, cure.to);
+    goTo('.limit-tried button');
   };
   const rows = evaluation.limits
     .flatMap((outcome, i) => {
@@ -46,8 +49,10 @@ export function LimitRows({ state, onChange }: LimitRowsProps) {
     })
     .sort((a, b) => URGENCY[a.outcome.state] - URGENCY[b.outcome.state]);
   return (
-    <div className="limits">
-      <h3 className="lab limits-head">Limits</h3>
+    <div ref={box} className="limits" data-last-good={state.isLastGood ? '' : undefined}>
+      <h3 className="lab limits-head" tabIndex={-1}>
+        Limits
+      </h3>
       {stands && (
         <p className="limit-tried" role="status">
           Tried for {stands.limit}: <CureWords state={state} cure={stands.cure} />{' '}
@@ -57,6 +62,7 @@ export function LimitRows({ state, onChange }: LimitRowsProps) {
             onClick={() => {
               onChange(stands.cure.name, stands.before);
               setTried(null);
+              goTo('.limits-head');
             }}
           >
             Put back

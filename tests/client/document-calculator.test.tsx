@@ -305,9 +305,21 @@ describe('limits', () => {
     await user.type(supply, '4.3 V{Tab}');
     await user.click(await screen.findByRole('button', { name: /^Try it: / }, { timeout: 5000 }));
     expect(limitRow('output').textContent).not.toContain('exceeded');
-    await user.click(screen.getByRole('button', { name: 'Put back' }));
+    const back = screen.getByRole('button', { name: 'Put back' });
+    expect(document.activeElement).toBe(back);
+    await user.click(back);
     expect(limitRow('output').textContent).toContain('exceeded');
+    expect(document.activeElement?.textContent).toBe('Limits');
     expect(supply.value).toBe('4.3 V');
+  });
+
+  test('undoing the last step hands the focus to its way back', async () => {
+    const { user } = open(gain());
+    await user.type(screen.getByLabelText<HTMLInputElement>('Supply'), '0{Tab}');
+    await user.click(screen.getByRole('button', { name: 'Undo' }));
+    expect(document.activeElement).toBe(screen.getByRole('button', { name: 'Redo' }));
+    await user.click(screen.getByRole('button', { name: 'Redo' }));
+    expect(document.activeElement).toBe(screen.getByRole('button', { name: 'Undo' }));
   });
 });
 
