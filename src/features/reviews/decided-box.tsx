@@ -22,7 +22,10 @@ export function DecidedBox({ decided, draft }: { decided: Decided; draft: DraftR
       <div className="decision-part grid gap-2">
         {isSigned ? (
           <>
-            <p>Your name stands in its title block. The version before is superseded.</p>
+            <p>
+              Your name stands in its title block.
+              {decided.version > 1 && ' The version before is superseded.'}
+            </p>
             <Link to={paths.recipe(decided.slug)}>Open {draft.title}</Link>
           </>
         ) : (

@@ -1,12 +1,12 @@
 import { useQuery } from '@tanstack/react-query';
 import { lazy, Suspense, useState } from 'react';
 import { Link } from 'react-router-dom';
-import type { ReviewPage } from '#api';
+import type { DraftRow, ReviewPage } from '#api';
 import { momentText } from '../../lib/locale.ts';
 import { paths } from '../../lib/paths.ts';
 import { announce } from '../../ui/announce.tsx';
 import { Loading } from '../../ui/blocks.tsx';
-import { StateMark } from '../../ui/marks.tsx';
+import { type AnyState, StateMark } from '../../ui/marks.tsx';
 import { MarginNote, Sheet } from '../../ui/sheet.tsx';
 import { Tabs } from '../../ui/tabs.tsx';
 import { ChecksList } from './checks-list.tsx';
@@ -15,7 +15,7 @@ import { DecisionBox } from './decision-box.tsx';
 import { MovedNotice } from './moved-notice.tsx';
 import { NumbersThatMove } from './numbers-that-move.tsx';
 import { reviewsReading } from './queries.ts';
-import { useDecision } from './use-decision.ts';
+import { type Decided, useDecision } from './use-decision.ts';
 import './reviews.css';
 
 const WordsThatChange = lazy(async () => ({ default: (await import('./words-that-change.tsx')).WordsThatChange }));
@@ -38,7 +38,7 @@ export function ReviewSheet({ page, isReading, onRead }: ReviewSheetProps) {
   const { moved, decided } = decision;
   return (
     <Sheet className="review-sheet" margin={<OthersWaiting id={page.review.draft.id} />}>
-      <ReviewHead page={page} />
+      <ReviewHead page={page} decided={decided} />
       {moved !== null && (
         <MovedNotice
           moved={moved}
@@ -62,7 +62,7 @@ export function ReviewSheet({ page, isReading, onRead }: ReviewSheetProps) {
   );
 }
 
-function ReviewHead({ page: { review, base } }: { page: ReviewPage }) {
+function ReviewHead({ page: { review, base }, decided }: { page: ReviewPage; decided: Decided | null }) {
   const { draft } = review;
   const who = (draft.sentBy ?? draft.owner).name;
   const writers = draft.writtenBy.map((writer) => writer.name).join(', ');
@@ -87,10 +87,16 @@ function ReviewHead({ page: { review, base } }: { page: ReviewPage }) {
           </>
         )}
         <span>revision {draft.revision}</span>
-        <StateMark state={draft.state === 'discarded' ? 'withdrawn' : draft.state} />
+        <StateMark state={stateAfter(draft.state, decided)} />
       </p>
     </header>
   );
+}
+
+/** The review stays as it was read; what was decided since is said at once. */
+function stateAfter(state: DraftRow['state'], decided: Decided | null): AnyState {
+  if (decided !== null) return decided.kind === 'signed-off' ? 'published' : 'draft';
+  return state === 'discarded' ? 'withdrawn' : state;
 }
 
 type View = 'changes' | 'page';
