@@ -98,7 +98,9 @@ function gotText(outcome: Outcome, result: ResultModel, to: { readonly unit: str
 
 function allowanceText(allowance: number, { quantity, dimensionUnit, reading }: ResultModel): string {
   const kind = quantity === 'temperature' ? 'temperature-difference' : quantity;
-  const options = { kind, unit: kind === null ? dimensionUnit : undefined, digits: 2, reading };
+  // A level has as many places at every size, so that a small one needs more digits than two to show at all.
+  const digits = kind === 'level' && allowance > 0 ? Math.max(2, 1 - Math.floor(Math.log10(allowance))) : 2;
+  const options = { kind, unit: kind === null ? dimensionUnit : undefined, digits, reading };
   return `±${writeValue(allowance, options).text}`;
 }
 

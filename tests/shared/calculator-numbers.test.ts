@@ -223,6 +223,7 @@ describe('runExample', () => {
       { sets: { v_ref: '1 V' }, limits: { 'input range': 'within' } },
       { sets: { 'R1.tolerance': '1 %' }, numbers: { cmrr_db: ['34 dB', '0.2 dB'] }, at: 'worst low' },
       { sets: {} },
+      { sets: { R1: '10k', R2: '10k', R3: '10k', R4: '10.1 kΩ' }, numbers: { cmrr_db: ['46.09 dB', '0.01 dB'] } },
     ],
   };
   const linked = linkedOf(gain);
@@ -237,6 +238,7 @@ describe('runExample', () => {
     expect(runs[1]?.passed).toBe(true);
     expect(runs[1]?.rows[0]?.got).toBe('46.0855\u2009dB');
     expect(runs[1]?.rows[0]?.within).toBe('±0.2\u2009dB');
+    expect(runs[7]?.rows[0]?.within).toBe('±0.01\u2009dB');
   });
 
   test('fails where one end of a range, or a single number for a range, is off', () => {
