@@ -272,20 +272,21 @@ describe('a draft that moved meanwhile', () => {
     });
   }
 
-  test('shows both texts, and puts mine on top of theirs when asked', async () => {
+  test('shows both texts, and uses what was typed when asked', async () => {
     const { heard, user } = openMoved();
     await type('title: A lamp', 'title: My lamp');
-    const panel = await screen.findByRole('region', { name: /Ines saved this draft/ });
+    // The page that shows both texts is loaded later.
+    const panel = await screen.findByRole('region', { name: /Ines saved this draft/ }, { timeout: 5000 });
     expect(within(panel).getAllByText(/Warm light|My/).length).toBeGreaterThan(1);
-    await user.click(within(panel).getByRole('button', { name: 'Keep mine on top' }));
+    await user.click(within(panel).getByRole('button', { name: 'Use what I typed, whole' }));
     await waitFor(() => expect(saves(heard)).toHaveLength(2));
     expect(saves(heard)[1]).toMatchObject({ baseRevision: 4, text: TEXT.replace('A lamp', 'My lamp') });
   });
 
-  test('takes theirs whole without saving again', async () => {
+  test('takes what was saved without saving again', async () => {
     const { heard, user } = openMoved();
     await type('title: A lamp', 'title: My lamp');
-    await user.click(await screen.findByRole('button', { name: 'Take theirs whole' }));
+    await user.click(await screen.findByRole('button', { name: 'Use what was saved, whole' }));
     expect(await sourceNow()).toBe(newest.text);
     expect(await screen.findByText('kept')).toBeTruthy();
     expect(saves(heard)).toHaveLength(1);

@@ -29,8 +29,8 @@ export function ConflictPanel({ conflict, mine, onEnd }: ConflictPanelProps) {
     <Segments<Side>
       label="Use here"
       options={[
-        { value: 'left', label: 'theirs' },
-        { value: 'right', label: 'mine' },
+        { value: 'left', label: 'what was saved' },
+        { value: 'right', label: 'what I typed' },
         { value: 'both', label: 'both' },
       ]}
       value={chosen.get(index) ?? 'both'}
@@ -48,23 +48,23 @@ export function ConflictPanel({ conflict, mine, onEnd }: ConflictPanelProps) {
       </p>
       <div className="conflict-acts">
         {rows !== null && (
-          <Button kind="main" onClick={() => end(mergedText(rows, chosen), 'The merged text is in the editor.')}>
+          <Button kind="main" onClick={() => end(mergedText(rows, chosen), 'What you chose is in the editor.')}>
             Use what is chosen below
           </Button>
         )}
-        <Button onClick={() => end(saved.text, 'The text of the server is in the editor.')}>Take theirs whole</Button>
-        <Button onClick={() => end(mine, 'Your text is kept on top.')}>Keep mine on top</Button>
-        <CopyButton text={mine} label="Copy mine" />
+        <Button onClick={() => end(saved.text, 'What was saved is in the editor.')}>Use what was saved, whole</Button>
+        <Button onClick={() => end(mine, 'What you typed is kept.')}>Use what I typed, whole</Button>
+        <CopyButton text={mine} label="Copy what I typed" />
       </div>
       {rows === null ? (
         <div className="two-texts">
-          <p className="two-head">Theirs</p>
-          <p className="two-head">Mine</p>
+          <p className="two-head">Saved</p>
+          <p className="two-head">Typed here</p>
           <pre className="two-left">{saved.text}</pre>
           <pre className="two-right">{mine}</pre>
         </div>
       ) : (
-        <TwoTexts rows={rows} left="Theirs" right="Mine" choice={choice} />
+        <TwoTexts rows={rows} left="Saved" right="Typed here" choice={choice} />
       )}
     </section>
   );
