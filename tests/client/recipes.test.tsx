@@ -337,6 +337,18 @@ describe('the list of recipes', () => {
     expect(document.activeElement?.textContent).toBe('Rail splitter');
   });
 
+  test('Enter opens the first row for what was typed, not the one that stood there before the answer', async () => {
+    // Unsearched, the rail splitter's group stands first.
+    const { router, user } = open('/recipes', {
+      ...answersOf(list),
+      'GET /api/recipes/search': { body: { hits: [{ slug: SLUG, matched: ['unity'] }] } },
+    });
+    await user.click(await screen.findByRole('searchbox'));
+    await user.paste('unity');
+    await user.keyboard('{Enter}');
+    await waitFor(() => expect(router.state.location.pathname).toBe(`/recipes/${SLUG}`));
+  });
+
   test('narrows by ticked facets and counts what each would leave', async () => {
     const { user } = open('/recipes', list);
     const box = await screen.findByRole('checkbox', { name: /^battery/ });

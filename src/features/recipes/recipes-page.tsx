@@ -1,6 +1,6 @@
 import { useQuery } from '@tanstack/react-query';
-import { type KeyboardEvent, type ReactNode, useEffect, useRef, useState } from 'react';
-import { Link, useSearchParams } from 'react-router-dom';
+import { type KeyboardEvent, type ReactNode, type RefObject, useEffect, useRef, useState } from 'react';
+import { Link, useNavigation, useSearchParams } from 'react-router-dom';
 import type { RecipeRow } from '#api';
 import { paths } from '../../lib/paths.ts';
 import { useMay } from '../../lib/session.ts';
@@ -71,7 +71,11 @@ function RecipeFinder({ recipes, mayWrite, margin }: RecipeFinderProps) {
   const ranked = isSearching && search.data ? inOrderOf(search.data.hits, recipes) : recipes;
   const found = narrowed(ranked, ticked);
 
+  const isLeaving = useRef<boolean>(false);
+  isLeaving.current = useNavigation().state !== 'idle';
   useEffect(() => {
+    // A row was opened meanwhile and its page is on the way: another navigation would end that one.
+    if (isLeaving.current) return;
     setParams(
       (now) => {
         const next = new URLSearchParams(now);
@@ -82,6 +86,8 @@ function RecipeFinder({ recipes, mayWrite, margin }: RecipeFinderProps) {
       { replace: true, preventScrollReset: true },
     );
   }, [asked, setParams]);
+  const isWaiting = isSearching && (typed.trim() !== asked || search.isFetching || search.data === undefined);
+  const askEnter = useEnterForFirst(isWaiting, list);
   useSpokenCount(asked, search.isFetching, found.length, recipes.length);
 
   const tick = (facet: FacetName, value: string, isTicked: boolean) => {
@@ -113,8 +119,14 @@ function RecipeFinder({ recipes, mayWrite, margin }: RecipeFinderProps) {
             maxLength={200}
             placeholder="difference amplifier, virtual ground, level shift …"
             value={typed}
-            onChange={(event) => setTyped(event.target.value)}
-            onKeyDown={(event) => fromSearchToList(event, list.current)}
+            onChange={(event) => {
+              askEnter.forget();
+              setTyped(event.target.value);
+            }}
+            onKeyDown={(event) => {
+              if (event.key === 'ArrowDown') fromSearchToList(event, list.current);
+              else if (event.key === 'Enter') askEnter.press(event);
+            }}
           />
           <span className="ask-count">{`${found.length} of ${recipes.length}`}</span>
         </div>
@@ -203,14 +215,34 @@ function rowLinks(list: HTMLElement | null): readonly HTMLAnchorElement[] {
   return [...(list?.querySelectorAll<HTMLAnchorElement>('.register tbody th a[href]') ?? [])];
 }
 
-/** ↓ goes from the search to the first row, Enter opens it. */
+/** ↓ goes from the search to the first row. */
 function fromSearchToList(event: KeyboardEvent, list: HTMLElement | null): void {
-  if (event.key !== 'ArrowDown' && event.key !== 'Enter') return;
   const [first] = rowLinks(list);
   if (!first) return;
   event.preventDefault();
-  if (event.key === 'Enter') first.click();
-  else first.focus();
+  first.focus();
+}
+
+/** Enter opens the first row for what is typed, as soon as that row stands there. */
+function useEnterForFirst(isWaiting: boolean, list: RefObject<HTMLElement | null>) {
+  const isAsked = useRef<boolean>(false);
+  const open = () => {
+    isAsked.current = false;
+    rowLinks(list.current)[0]?.click();
+  };
+  useEffect(() => {
+    if (isAsked.current && !isWaiting) open();
+  });
+  return {
+    press: (event: KeyboardEvent) => {
+      event.preventDefault();
+      if (isWaiting) isAsked.current = true;
+      else open();
+    },
+    forget: () => {
+      isAsked.current = false;
+    },
+  };
 }
 
 /** Past the end of one group's register the arrow keys go on in the next. */
