@@ -161,10 +161,14 @@ function readPair(left: Slice, right: Slice, options: ReadOptions): Result<Pair,
   return ok({ first: first.value, firstUnit: firstUnit.value, second: second.value, secondUnit: secondUnit.value });
 }
 
+/** In a field "10 k" is read as 10k; in recipe text the unit is wanted. */
+const LETTER_APART = /([0-9])[ \u00a0\u2009]([A-Za-zµ\u03bc])$/;
+
 function readTerm(slice: Slice, options: ReadOptions): Result<Term, QuantityProblem> {
   const { text } = slice;
   const kind = kindOf(options);
-  const marking = kind === null ? null : readMarking(text, kind);
+  const code = options.unit === 'required' ? text : text.replace(LETTER_APART, '$1$2');
+  const marking = kind === null ? null : readMarking(code, kind);
   if (marking !== null) {
     if (!marking.ok) return refuse(slice, marking.error);
     return ok({ ...slice, decimal: marking.value.decimal, unit: readUnit(marking.value.unit), unitPlace: slice });

@@ -266,6 +266,12 @@ describe('readValue, a single value', () => {
     expect(ends(text, kind)[0]).toBe(si);
   });
 
+  test('in a field the letter may stand apart; in recipe text the unit is wanted', () => {
+    expect(ends('10 k', 'resistance', { unit: 'Ω' })[0]).toBe(10000);
+    expect(refusal('10 K', 'resistance', { unit: 'Ω' })[0]).toBe('prefix-case');
+    expect(refusal('10 k', 'resistance')).toEqual(['unit-unknown', 'k']);
+  });
+
   test('a code has one decimal sign: 1.5k2 is none', () => {
     expect(refusal('1.5k2', 'resistance')[0]).toBe('unit-unknown');
   });

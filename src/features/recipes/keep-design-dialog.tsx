@@ -26,6 +26,7 @@ export interface KeepDesignDialogProps {
 /** Names the numbers on the page and keeps them as a design, tied to this version. */
 export function KeepDesignDialog({ page: { recipe, version }, inputs, shown, onClose }: KeepDesignDialogProps) {
   const navigate = useNavigate();
+  const broken = brokenLimits(shown);
   const { act } = useAct('designs.keep', ['designs.list', 'recipes.list']);
   const { field, onSubmit, isSending, refusal, mending } = useEndpointForm({
     schema: FORM,
@@ -48,6 +49,12 @@ export function KeepDesignDialog({ page: { recipe, version }, inputs, shown, onC
         <TextField label="Project" optional autoComplete="off" {...field('project')} />
         <TextArea label="Note" optional {...field('note')} />
         <SelectField label="Who sees it" options={VISIBILITIES} {...field('visibility')} />
+        {broken.length > 0 && (
+          <p>
+            {broken.length === 1 ? '1 limit does not hold' : `${broken.length} limits do not hold`} with these numbers:{' '}
+            {broken.join(', ')}. The design says so too.
+          </p>
+        )}
         {refusal && <Failure lead="Not kept.">{refusal.message} Your numbers are still here.</Failure>}
         <DialogActions>
           <Button kind="main" type="submit" acting="Keeping" isActing={isSending}>
@@ -58,5 +65,11 @@ export function KeepDesignDialog({ page: { recipe, version }, inputs, shown, onC
         </DialogActions>
       </form>
     </Dialog>
+  );
+}
+
+function brokenLimits(shown: ShownResults): readonly string[] {
+  return Object.values(shown.calculators).flatMap(({ limits }) =>
+    Object.entries(limits).flatMap(([name, state]) => (state === 'exceeded' || state === 'no-value' ? [name] : [])),
   );
 }

@@ -25,7 +25,7 @@ export function InviteDialog({ onClose, firstRole = 'reader' }: { onClose: () =>
   return (
     <Dialog
       title="Invite a person"
-      description="They get a link by mail, set their name and a password, and are in. The link lives 7 days."
+      description="They set their name and a password by a link that lives 7 days. No mail server is set up, so make the link under “Acts” afterwards and hand it over."
       isOpen
       onClose={onClose}
     >
