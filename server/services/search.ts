@@ -1,7 +1,7 @@
 import { eq, inArray, sql } from 'drizzle-orm';
 import MiniSearch from 'minisearch';
 import type { Answer } from '#api';
-import { type SearchText, searchText } from '#recipe';
+import { type RecipeDocument, type SearchText, searchText } from '#recipe';
 import { ok } from '#text';
 import type { Db } from '../database/open.ts';
 import { recipe, recipeVersion } from '../database/schema.ts';
@@ -156,13 +156,16 @@ async function readEntries(db: Db, ids: readonly string[]): Promise<readonly Ent
       id: recipe.id,
       slug: recipe.slug,
       number: recipe.number,
-      document: recipeVersion.document,
+      // The body is the larger part of a document, and names are not taken from it.
+      document: sql<Omit<RecipeDocument, 'body'>>`${recipeVersion.document} - 'body'`,
     })
     .from(recipe)
     .innerJoin(recipeVersion, eq(recipeVersion.recipeId, recipe.id))
     .where(inArray(recipe.id, [...ids]))
     .orderBy(recipe.id, sql`${recipeVersion.state} = 'published' desc`, sql`${recipeVersion.version} desc`);
-  return found.map(({ id, slug, number, document }) => entryOf(id, slug ?? '', number ?? '', searchText(document)));
+  return found.map(({ id, slug, number, document }) =>
+    entryOf(id, slug ?? '', number ?? '', searchText({ ...document, body: [] })),
+  );
 }
 
 function entryOf(id: string, slug: string, number: string, text: SearchText): Entry {
