@@ -35,7 +35,7 @@ export async function startBuilt(
   variables: Readonly<Record<string, string>> = {},
 ): Promise<BuiltServer> {
   if (!existsSync('dist/server/main.js')) throw new Error('there is no build: run "npm run build" first');
-  const child = spawn(process.execPath, ['--enable-source-maps', 'dist/server/main.js'], {
+  const child = spawn(process.execPath, ['dist/server/main.js'], {
     env: { ...process.env, NODE_ENV: 'production', PORT: String(port), QUADRILLE_DATA: dataDirectory, ...variables },
     stdio: ['ignore', 'pipe', 'pipe'],
   });
