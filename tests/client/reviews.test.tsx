@@ -1,9 +1,11 @@
 import { QueryClientProvider } from '@tanstack/react-query';
-import { configure, render, screen, within } from '@testing-library/react';
+import { configure, render, screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { createMemoryRouter, Outlet, RouterProvider } from 'react-router-dom';
 import { describe, expect, test } from 'vitest';
 import type { Me, ReviewPage as Page } from '#api';
+import { checkedForYou } from '../../src/features/reviews/checks-list.tsx';
+import { withRangeSign } from '../../src/features/reviews/number-words.ts';
 import { ReviewPage } from '../../src/features/reviews/review-page.tsx';
 import { ReviewsPage } from '../../src/features/reviews/reviews-page.tsx';
 import { textChanges } from '../../src/features/reviews/text-changes.ts';
@@ -121,6 +123,52 @@ describe('the numbers of a review', () => {
     ).toEqual(['within', 'exceeded', 'newly broken']);
     expect(screen.getByText(/1 of 3 designs would move\. The other 2 would come out the same/)).toBeTruthy();
     expect(screen.getByText(/And 3 private designs would move, 1 of them would break a limit\./)).toBeTruthy();
+  });
+
+  test('are written as ranges in one way, whether of an example or of a design', async () => {
+    const row = { calculator: 'shunt', example: 'Cold', result: 'V', label: 'Output' };
+    const design = {
+      label: 'Output',
+      before: '0.245 … 4.235\u2009V',
+      after: '0.300 … 4.300\u2009V',
+      newlyBroken: false,
+    };
+    open({
+      pages: [
+        reviewPage({
+          numbers: [
+            { ...row, before: '0.245 to 4.235\u2009V', after: '500.0\u2009mV to 1.200\u2009kV, not everywhere' },
+          ],
+          designs: {
+            seen: [{ ...BROKEN_DESIGN, changes: [design] }],
+            unchanged: 0,
+            privateCount: 0,
+            privateNewlyBroken: 0,
+          },
+        }),
+      ],
+    });
+    const cells = async (name: string) => {
+      const table = await screen.findByRole('table', { name });
+      return within(table)
+        .getAllByRole('cell')
+        .map((cell) => cell.textContent);
+    };
+    expect((await cells('Numbers of worked examples that move')).slice(0, 2)).toEqual([
+      '0.245 … 4.235\u2009V',
+      '500.0\u2009mV … 1.200\u2009kV, not everywhere',
+    ]);
+    expect((await cells('Numbers of kept designs that would move')).slice(0, 2)).toEqual([
+      '0.245 … 4.235\u2009V',
+      '0.300 … 4.300\u2009V',
+    ]);
+  });
+
+  test('keep their words where they are no range', () => {
+    expect(withRangeSign('unbounded to 5.000\u2009V')).toBe('unbounded … 5.000\u2009V');
+    expect(withRangeSign('−2.000 to −1.000\u2009V')).toBe('−2.000 … −1.000\u2009V');
+    expect(withRangeSign('no value: the log of 0 to 1')).toBe('no value: the log of 0 to 1');
+    expect(withRangeSign('waiting for R1')).toBe('waiting for R1');
   });
 
   test('of a first version there are none: the page itself stands first', async () => {
@@ -284,6 +332,25 @@ describe('signing off', () => {
     expect(screen.getByText('A check fails, so it cannot be published. Send it back.')).toBeTruthy();
   });
 
+  test('counts hazards and cautions as one check', async () => {
+    const caution = (passed: boolean) => ({ kind: 'caution' as const, title: 'A hazard', passed, detail: '' });
+    open({ pages: [reviewPage({ checks: [caution(true)] })] });
+    expect(await screen.findByText('Hazards and cautions agree')).toBeTruthy();
+    const failing = checkedForYou(reviewPage({ checks: [caution(true), caution(false)] }));
+    expect(failing.at(-1)).toEqual({ words: 'Hazards and cautions do not agree', passed: false });
+  });
+
+  test('is told to this person’s tabs that show the draft', async () => {
+    const told: unknown[] = [];
+    const other = new BroadcastChannel(`quadrille:draft/${EDITOR.id}/${REVIEW_ID}`);
+    other.onmessage = ({ data }: MessageEvent<unknown>) => void told.push(data);
+    const { user } = open();
+    await tickAll(user);
+    await user.click(await signOffButton());
+    await waitFor(() => expect(told).toEqual([{ kind: 'state' }]));
+    other.close();
+  });
+
   test('is refused to whoever wrote a part, with the reason in place of the buttons', async () => {
     const whyNot = 'You wrote a part of this text, so it needs a second person to decide.';
     open({
@@ -343,6 +410,25 @@ describe('the list of reviews', () => {
     const others = screen.getByRole('table', { name: 'Waiting for somebody else' });
     expect(within(others).getByText(/needs a second person/)).toBeTruthy();
     expect(within(others).getByText(/a new recipe/)).toBeTruthy();
+  });
+
+  test('puts first what has waited longest', async () => {
+    const sent = (title: string, id: string, sentAt: string) => ({
+      draft: draftRow({ title, id, sentAt }),
+      mayDecide: true,
+      whyNot: null,
+    });
+    open({
+      at: '/reviews',
+      reviews: [
+        sent('Second', REVIEW_ID, '2026-05-12T09:05:00.000Z'),
+        sent('Third', '77aa1c86-7d8e-4f6a-9d15-0f3b5f7d2a01', '2026-05-14T08:00:00.000Z'),
+        sent('First', '77aa1c86-7d8e-4f6a-9d15-0f3b5f7d2a02', '2026-04-30T16:00:00.000Z'),
+      ],
+    });
+    const table = await screen.findByRole('table', { name: 'Waiting for you' });
+    const links = within(table).getAllByRole('link');
+    expect(links.map((link) => link.textContent)).toEqual(['First', 'Second', 'Third']);
   });
 
   test('when nothing waits, leads to writing', async () => {

@@ -1,17 +1,21 @@
-import { EditorView } from '@codemirror/view';
-import { QueryClientProvider } from '@tanstack/react-query';
-import { act, configure, render, screen, waitFor, within } from '@testing-library/react';
-import userEvent from '@testing-library/user-event';
-import { createMemoryRouter, RouterProvider } from 'react-router-dom';
+import { configure, fireEvent, screen, waitFor, within } from '@testing-library/react';
 import { beforeEach, describe, expect, test, vi } from 'vitest';
-import type { DraftPage, Me, SaveConflict } from '#api';
-import { compileRecipe } from '#recipe';
-import type { CompileRequest } from '../../src/features/writing/compile.worker.ts';
-import { StartPage } from '../../src/features/writing/start-page.tsx';
-import { WritePage } from '../../src/features/writing/write-page.tsx';
-import { newQueryClient } from '../../src/lib/query-client.ts';
-import { LiveRegions } from '../../src/ui/announce.tsx';
-import { fakeServer, type Heard, type Reply } from './fake-server.ts';
+import {
+  type Answers,
+  draftPage,
+  editor,
+  HASH,
+  ID,
+  moved,
+  open,
+  READ,
+  SAVE,
+  saves,
+  sourceNow,
+  standIns,
+  TEXT,
+  type,
+} from './writing-fixtures.tsx';
 
 // A page is compiled, drawn and saved with real pauses; on a busy machine the usual second is short.
 configure({ asyncUtilTimeout: 8000 });
@@ -26,149 +30,10 @@ vi.mock('idb-keyval', () => ({
   entries: async () => [...kept.entries()],
 }));
 
-/** Compiles in the page itself, a moment later, as the worker would. */
-class PageWorker {
-  onmessage: ((event: { data: unknown }) => void) | null = null;
-  onerror = null;
-  constructor() {
-    setTimeout(() => this.onmessage?.({ data: { ready: true } }), 0);
-  }
-  postMessage({ version, text, facts }: CompileRequest) {
-    setTimeout(() => this.onmessage?.({ data: { version, compiled: compileRecipe(text, facts) } }), 0);
-  }
-  terminate() {
-    this.onmessage = null;
-  }
-}
-
-/** jsdom lays nothing out; the editor asks for the places of its lines all the same. */
 beforeEach(() => {
   kept.clear();
-  vi.stubGlobal('Worker', PageWorker);
-  const nowhere = () => ({ length: 0, item: () => null, [Symbol.iterator]: [][Symbol.iterator] });
-  Object.assign(Range.prototype, { getClientRects: nowhere, getBoundingClientRect: () => new DOMRect() });
+  standIns();
 });
-
-const ID = '0c7f6f0e-9a1d-4c4e-8d53-0e2f5c6f7a10';
-const HASH = 'a'.repeat(64);
-const TEXT = `---
-title: A lamp
-slug: a-lamp
-summary: Light.
-hazards: [none]
----
-
-<Calculator id="lamp" title="Numbers">
-  <Given name="V" label="Voltage" quantity="voltage" value="6 V" />
-  <Given name="R" label="Resistance" quantity="resistance" value="12 Ω" />
-  <Result name="I" label="Current" formula="V / R" />
-  <Example title="Half an ampere" source="own arithmetic">
-    <Expect name="I" to="0.5 A" />
-  </Example>
-</Calculator>
-`;
-
-const aren: Me = {
-  person: { id: 'p1', name: 'Aren', email: 'aren@example.org', role: 'author' },
-  team: {
-    name: 'Workshop',
-    timeZone: 'UTC',
-    allowSelfSignOff: false,
-    publicUrl: 'http://localhost',
-    needsSetUp: false,
-  },
-  notices: [],
-  reviewsWaiting: 0,
-  release: '0.1.0',
-};
-
-function draftPage(change: Partial<DraftPage> = {}, row: Partial<DraftPage['draft']> = {}): DraftPage {
-  return {
-    draft: {
-      id: ID,
-      title: 'A lamp',
-      number: '',
-      slug: 'a-lamp',
-      state: 'draft',
-      revision: 3,
-      from: null,
-      owner: { id: 'p1', name: 'Aren' },
-      authors: [],
-      writtenBy: [{ id: 'p1', name: 'Aren' }],
-      updatedAt: '2026-05-18T10:00:00.000Z',
-      sentBy: null,
-      sentAt: null,
-      note: '',
-      sentBack: null,
-      ...row,
-    },
-    text: TEXT,
-    hash: HASH,
-    mayWrite: true,
-    mayTakeBack: false,
-    base: null,
-    facts: { recipes: {}, topics: [], hazardVolts: 42.4 },
-    ...change,
-  };
-}
-
-type Answers = Readonly<Record<string, Reply | ((heard: Heard) => Reply | Promise<Reply>)>>;
-
-function open(answers: Answers, at = `/write/${ID}`) {
-  const heard = fakeServer({ 'GET /api/me': { body: aren }, ...answers });
-  const queries = newQueryClient();
-  queries.setQueryData(['me.read', {}], aren);
-  const router = createMemoryRouter(
-    [
-      { path: '/write', Component: StartPage },
-      { path: '/write/:id', Component: WritePage },
-      { path: '*', element: <p>another page</p> },
-    ],
-    { initialEntries: [at] },
-  );
-  render(
-    <QueryClientProvider client={queries}>
-      <RouterProvider router={router} />
-      <LiveRegions />
-    </QueryClientProvider>,
-  );
-  return { heard, router, user: userEvent.setup() };
-}
-
-const READ = `GET /api/drafts/${ID}`;
-const SAVE = `PUT /api/drafts/${ID}/text`;
-const saves = (heard: readonly Heard[]) => heard.filter((one) => one.method === 'PUT').map((one) => one.body);
-const moved = (change: Partial<SaveConflict> = {}): Reply => ({
-  status: 409,
-  body: {
-    type: 'x',
-    title: 'It changed in the meantime',
-    status: 409,
-    code: 'stale',
-    saveId: 'a-save-of-this-tab',
-    state: 'draft',
-    revision: 4,
-    text: TEXT.replace('Light.', 'Warm light.'),
-    baseText: TEXT,
-    savedBy: 'Ines',
-    ...change,
-  },
-});
-
-async function editor(): Promise<EditorView> {
-  const content = await screen.findByRole('textbox', { name: /^Source of/ });
-  const view = EditorView.findFromDOM(content);
-  if (view === null) throw new Error('no editor stands there');
-  return view;
-}
-
-async function type(before: string, after: string): Promise<void> {
-  const view = await editor();
-  const from = view.state.doc.toString().indexOf(before);
-  act(() => view.dispatch({ changes: { from, to: from + before.length, insert: after } }));
-}
-
-const sourceNow = async () => (await editor()).state.doc.toString();
 
 describe('the writing page', () => {
   test('names the line of a mistake, keeps the last good page, and is ready to send once it is mended', async () => {
@@ -215,17 +80,24 @@ describe('the writing page', () => {
     await waitFor(() => expect(kept.size).toBe(0));
   });
 
-  test('says once that a text is not kept without a connection', async () => {
+  test('says once that a text is not kept without a connection, and keeps it when the connection is back', async () => {
+    let isOffline = true;
     open({
       [READ]: { body: draftPage() },
       [SAVE]: () => {
-        throw new TypeError('no network');
+        if (isOffline) throw new TypeError('no network');
+        return { body: { revision: 4, hash: HASH, at: '2026-05-18T10:00:00.000Z' } };
       },
     });
     await type('Light.', 'Bright light.');
     expect(await screen.findByText('not yet kept: no connection', { selector: 'span' })).toBeTruthy();
     expect(screen.getByRole('alert').textContent).toContain('not yet kept: no connection');
     expect(kept.size).toBe(1);
+    isOffline = false;
+    // A save that still waits for its next try would go to the server of a later test.
+    fireEvent(window, new Event('online'));
+    expect(await screen.findByText('kept')).toBeTruthy();
+    await waitFor(() => expect(kept.size).toBe(0));
   });
 
   test('offers a text that was left unsent, and sends it only when it is taken', async () => {
@@ -276,7 +148,7 @@ describe('a draft that moved meanwhile', () => {
     const { heard, user } = openMoved();
     await type('title: A lamp', 'title: My lamp');
     // The page that shows both texts is loaded later.
-    const panel = await screen.findByRole('region', { name: /Ines saved this draft/ }, { timeout: 5000 });
+    const panel = await screen.findByRole('region', { name: /Ines saved this draft/ }, { timeout: 15_000 });
     expect(within(panel).getAllByText(/Warm light|My/).length).toBeGreaterThan(1);
     await user.click(within(panel).getByRole('button', { name: 'Use what I typed, whole' }));
     await waitFor(() => expect(saves(heard)).toHaveLength(2));

@@ -69,7 +69,6 @@ function KindOfChecks({ kind, checks }: { kind: Check['kind']; checks: readonly 
 const COUNTED = [
   ['example', 'worked example', 'worked examples'],
   ['drawing', 'drawing', 'drawings'],
-  ['caution', 'check of hazards', 'checks of hazards'],
 ] as const;
 
 /** One line for each kind, for the decision: `3 of 3 worked examples agree`. */
@@ -90,6 +89,10 @@ export function checkedForYou(page: ReviewPage): readonly { readonly words: stri
     const agrees = passed(kind) === all(kind);
     const single = `The ${one} ${agrees ? 'agrees' : 'disagrees'}`;
     lines.push({ words: all(kind) === 1 ? single : `${passed(kind)} of ${all(kind)} ${many} agree`, passed: agrees });
+  }
+  if (all('caution') > 0) {
+    const agree = passed('caution') === all('caution');
+    lines.push({ words: `Hazards and cautions ${agree ? 'agree' : 'do not agree'}`, passed: agree });
   }
   return lines;
 }

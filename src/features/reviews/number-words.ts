@@ -45,6 +45,14 @@ export function privateWords({ privateCount, privateNewlyBroken }: ReviewPage['d
   return `And ${privateCount} private designs would move, ${broken}.`;
 }
 
+/** The ends of a range in words, `0.245 to 4.235 V`: after a number, its unit or one of the words for an end. */
+const RANGE_IN_WORDS = /^((?:−?\d|above \d|below −\d|unbounded\b)[^:,]*?) to (?=−?\d|above |below |unbounded)/;
+
+/** Writes a range as results do everywhere, `0.245 … 4.235 V`; leaves every other text as it is. */
+export function withRangeSign(text: string): string {
+  return text.replace(RANGE_IN_WORDS, '$1 … ');
+}
+
 export function counted(count: number, noun: string): string {
   return `${count} ${noun}${count === 1 ? '' : 's'}`;
 }

@@ -4,7 +4,7 @@ import type { RecipeDocument } from '#recipe';
 import { Amount } from '../../document/result-rows.tsx';
 import { Button } from '../../ui/button.tsx';
 import { LimitMark } from '../../ui/marks.tsx';
-import { designWords, exampleWords, hasExample, privateWords } from './number-words.ts';
+import { designWords, exampleWords, hasExample, privateWords, withRangeSign } from './number-words.ts';
 
 type Change = ReviewPage['numbers'][number];
 type Affected = ReviewPage['designs']['seen'][number];
@@ -122,7 +122,7 @@ function GroupHead({ children }: { children: React.ReactNode }) {
 function Before({ value }: { value: string | null }) {
   return (
     <td className="moves-number moves-old" data-head="before">
-      {value === null ? 'not there' : <Amount text={value} />}
+      {value === null ? 'not there' : <Amount text={withRangeSign(value)} />}
     </td>
   );
 }
@@ -130,7 +130,7 @@ function Before({ value }: { value: string | null }) {
 function After({ value }: { value: string | null }) {
   return (
     <td className="moves-number" data-head="after">
-      {value === null ? 'not there' : <Amount text={value} />}
+      {value === null ? 'not there' : <Amount text={withRangeSign(value)} />}
     </td>
   );
 }

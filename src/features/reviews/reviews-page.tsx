@@ -39,6 +39,7 @@ export function ReviewsPage() {
   );
 }
 
+/** What has waited longest comes first. */
 function Waiting({ rows }: { rows: readonly ReviewRow[] }) {
   if (rows.length === 0) {
     return (
@@ -48,8 +49,9 @@ function Waiting({ rows }: { rows: readonly ReviewRow[] }) {
       </EmptyLines>
     );
   }
-  const yours = rows.filter((row) => row.mayDecide);
-  const others = rows.filter((row) => !row.mayDecide);
+  const waiting = rows.toSorted((a, b) => (a.draft.sentAt ?? '').localeCompare(b.draft.sentAt ?? ''));
+  const yours = waiting.filter((row) => row.mayDecide);
+  const others = waiting.filter((row) => !row.mayDecide);
   return (
     <>
       {yours.length > 0 && <Group title="Waiting for you" rows={yours} />}

@@ -1,6 +1,8 @@
 import { useState } from 'react';
 import type { ReviewPage } from '#api';
+import { tellOfDraft } from '../../lib/draft-channel.ts';
 import type { ClientFailure } from '../../lib/failure.ts';
+import { usePerson } from '../../lib/session.ts';
 import { useAct } from '../../lib/use-act.ts';
 import { announce } from '../../ui/announce.tsx';
 import { type MovedDraft, movedDraft } from './moved-draft.ts';
@@ -40,6 +42,7 @@ export function useDecision({ review, hash, ticks }: ReviewPage): Decision {
   const { id, revision } = review.draft;
   const signing = useAct('reviews.signOff', OUT_OF_DATE);
   const sending = useAct('reviews.sendBack', OUT_OF_DATE);
+  const person = usePerson();
   const [note, setNote] = useState('');
   const [noteError, setNoteError] = useState<string | undefined>(undefined);
   // Each tick with the hash of the text that it was made for.
@@ -50,6 +53,10 @@ export function useDecision({ review, hash, ticks }: ReviewPage): Decision {
   const isTicked = (tick: string) => ticked.get(tick) === hash;
   const left = ticks.filter((tick) => !isTicked(tick)).length;
 
+  const decide = (how: Decided) => {
+    setDecided(how);
+    tellOfDraft(person.id, id, { kind: 'state' });
+  };
   const refuse = (lead: string, failure: ClientFailure) => {
     const of = failure.fields.find((one) => one.field === 'note' || one.field === 'reason');
     setNoteError(of?.message);
@@ -62,7 +69,7 @@ export function useDecision({ review, hash, ticks }: ReviewPage): Decision {
     const body = { revision, hash, ticks: ticks.filter(isTicked), note };
     const signed = await signing.act({ params: { id }, body });
     if (!signed.ok) return refuse(NOTHING_DONE.signOff, signed.error);
-    setDecided({ kind: 'signed-off', ...signed.value });
+    decide({ kind: 'signed-off', ...signed.value });
   };
   const sendBack = async () => {
     if (note.trim() === '') {
@@ -72,7 +79,7 @@ export function useDecision({ review, hash, ticks }: ReviewPage): Decision {
     }
     setRefusal(null);
     const sent = await sending.act({ params: { id }, body: { revision, hash, reason: note } });
-    if (sent.ok) setDecided({ kind: 'sent-back' });
+    if (sent.ok) decide({ kind: 'sent-back' });
     else refuse(NOTHING_DONE.sendBack, sent.error);
     return true;
   };

@@ -1,4 +1,3 @@
-import { useQueryClient } from '@tanstack/react-query';
 import { useState } from 'react';
 import { useNavigate } from 'react-router-dom';
 import type { DraftRow } from '#api';
@@ -9,7 +8,6 @@ import { Failure } from '../../ui/blocks.tsx';
 import { Button } from '../../ui/button.tsx';
 import { CopyButton } from '../../ui/copy-button.tsx';
 import type { DraftConflict } from './draft-save.ts';
-import { draftReading } from './queries.ts';
 
 export interface ClosedPanelProps {
   readonly conflict: DraftConflict & { readonly kind: 'closed' };
@@ -17,34 +15,40 @@ export interface ClosedPanelProps {
   readonly draft: DraftRow;
   /** The text is safe elsewhere: this tab lets go of it. */
   readonly onLeave: () => void;
+  /** Shows the draft as the server has it; gives the words of a failure, else null. */
+  readonly onShow: () => Promise<string | null>;
 }
 
 /** The draft can no longer be written: says why, where the text is kept, and how to go on with it. */
-export function ClosedPanel({ conflict, mine, draft, onLeave }: ClosedPanelProps) {
+export function ClosedPanel({ conflict, mine, draft, onLeave, onShow }: ClosedPanelProps) {
   const { saved } = conflict;
   const start = useAct('drafts.start', ['drafts.list']);
-  const queries = useQueryClient();
   const navigate = useNavigate();
-  const [failed, setFailed] = useState<string | null>(null);
+  const [failed, setFailed] = useState<{ readonly lead: string; readonly words: string } | null>(null);
+  const fail = (lead: string, words: string) => {
+    setFailed({ lead, words });
+    announce(`${lead} ${words}`, 'assertive');
+  };
   const openAsNew = async () => {
     setFailed(null);
     const isChange = saved.state === 'published' && draft.slug !== '';
     const answer = await start.act({ body: isChange ? { changes: draft.slug, text: mine } : { text: mine } });
     if (!answer.ok) {
-      setFailed(answer.error.message);
-      announce(`Not opened. ${answer.error.message}`, 'assertive');
-      return;
+      return fail('Not opened.', answer.error.message);
     }
     if (answer.value.already) {
-      setFailed('Somebody has opened the next change of this recipe already. Copy your text, then bring it in there.');
-      return;
+      return fail(
+        'Not opened.',
+        'Somebody has opened the next change of this recipe already. Copy your text, then bring it in there.',
+      );
     }
     onLeave();
     await navigate(paths.write(answer.value.id));
   };
   const seeDraft = async () => {
-    onLeave();
-    await queries.invalidateQueries({ queryKey: draftReading(draft.id).queryKey });
+    setFailed(null);
+    const words = await onShow();
+    if (words !== null) fail('Not shown.', words);
   };
   return (
     <section className="conflict" aria-labelledby="closed-head">
@@ -60,7 +64,7 @@ export function ClosedPanel({ conflict, mine, draft, onLeave }: ClosedPanelProps
         <CopyButton text={mine} label="Copy" />
         <Button onClick={() => void seeDraft()}>Show the draft as it is</Button>
       </div>
-      {failed !== null && <Failure lead="Not opened.">{failed} Your text is still here.</Failure>}
+      {failed !== null && <Failure lead={failed.lead}>{failed.words} Your text is still here.</Failure>}
       <pre className="conflict-text">{mine}</pre>
     </section>
   );

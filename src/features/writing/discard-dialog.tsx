@@ -1,6 +1,8 @@
 import { useState } from 'react';
 import { useNavigate } from 'react-router-dom';
+import { tellOfDraft } from '../../lib/draft-channel.ts';
 import { paths } from '../../lib/paths.ts';
+import { usePerson } from '../../lib/session.ts';
 import { useAct } from '../../lib/use-act.ts';
 import { announce } from '../../ui/announce.tsx';
 import { Failure } from '../../ui/blocks.tsx';
@@ -21,6 +23,7 @@ export function DiscardDialog({ draftId, written, title, onClose }: DiscardDialo
   const discard = useAct('drafts.discard', ['drafts.list']);
   const [failure, setFailure] = useState<string | null>(null);
   const navigate = useNavigate();
+  const person = usePerson();
   const go = async () => {
     setFailure(null);
     const seen = await settledBase(draftId, written.text, written.saver);
@@ -28,6 +31,7 @@ export function DiscardDialog({ draftId, written, title, onClose }: DiscardDialo
     if (answer?.ok) {
       announce('The draft is put aside');
       await navigate(paths.start());
+      tellOfDraft(person.id, draftId, { kind: 'state' });
       return;
     }
     const words = typeof seen === 'string' ? seen : (answer?.error.message ?? '');

@@ -1,8 +1,10 @@
-import { useMemo, useRef, useState } from 'react';
+import { useEffect, useMemo, useRef, useState } from 'react';
 import { Link } from 'react-router-dom';
 import type { DraftPage } from '#api';
+import { openDraftChannel, tellOfDraft } from '../../lib/draft-channel.ts';
 import { momentText } from '../../lib/locale.ts';
 import { paths } from '../../lib/paths.ts';
+import { usePerson } from '../../lib/session.ts';
 import { useAct } from '../../lib/use-act.ts';
 import { announce } from '../../ui/announce.tsx';
 import { Failure } from '../../ui/blocks.tsx';
@@ -16,11 +18,12 @@ import { WriteBar } from './write-bar.tsx';
 import { WriteColumns } from './write-columns.tsx';
 
 /** A draft that this person cannot change now: in review, closed, or somebody else's. */
-export function FrozenDraft({ page }: { page: DraftPage }) {
+export function FrozenDraft({ page, onNews }: { page: DraftPage; onNews: () => void }) {
   const { draft, text } = page;
   const editor = useRef<MountedEditor | null>(null);
   const title = frontValue(text, 'title');
   const [seesSaves, setSeesSaves] = useState(false);
+  useFrozenNews(draft.id, onNews);
   const facts = useMemo(() => factsOf(page), [page]);
   usePageTitle(`${title || 'A draft'}, ${draft.state === 'in-review' ? 'in review' : 'not to be changed'}`);
   return (
@@ -55,6 +58,25 @@ export function FrozenDraft({ page }: { page: DraftPage }) {
       {seesSaves && <SavesDialog draftId={draft.id} current={text} onClose={() => setSeesSaves(false)} />}
     </div>
   );
+}
+
+/** What cannot be written here may be decided elsewhere: in another tab, or while this window was behind others. */
+function useFrozenNews(id: string, onNews: () => void): void {
+  const person = usePerson();
+  const heard = useRef(onNews);
+  heard.current = onNews;
+  useEffect(() => {
+    const look = () => heard.current();
+    const onVisible = () => document.visibilityState === 'visible' && look();
+    const channel = openDraftChannel(person.id, id, (message) => message.kind === 'state' && look());
+    window.addEventListener('focus', look);
+    document.addEventListener('visibilitychange', onVisible);
+    return () => {
+      channel.close();
+      window.removeEventListener('focus', look);
+      document.removeEventListener('visibilitychange', onVisible);
+    };
+  }, [person.id, id]);
 }
 
 function WhyFrozen({ page }: { page: DraftPage }) {
@@ -94,12 +116,15 @@ function WhyFrozen({ page }: { page: DraftPage }) {
 function TakeBack({ page }: { page: DraftPage }) {
   const { draft, hash } = page;
   const takeBack = useAct('drafts.takeBack', ['drafts.list', 'drafts.read', 'reviews.list', 'me.read']);
+  const person = usePerson();
   const [failure, setFailure] = useState<string | null>(null);
   const go = async () => {
     setFailure(null);
     const answer = await takeBack.act({ params: { id: draft.id }, body: { revision: draft.revision, hash } });
-    if (answer.ok) announce('Taken back. You can write on.');
-    else {
+    if (answer.ok) {
+      announce('Taken back. You can write on.');
+      tellOfDraft(person.id, draft.id, { kind: 'state' });
+    } else {
       setFailure(answer.error.message);
       announce(`Not taken back. ${answer.error.message}`, 'assertive');
     }

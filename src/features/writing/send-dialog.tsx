@@ -2,7 +2,9 @@ import { useState } from 'react';
 import type { DraftRow } from '#api';
 import type { ShownDiagnostic } from '#text';
 import { request } from '../../lib/client.ts';
+import { tellOfDraft } from '../../lib/draft-channel.ts';
 import type { ClientFailure } from '../../lib/failure.ts';
+import { usePerson } from '../../lib/session.ts';
 import { useAct } from '../../lib/use-act.ts';
 import type { UsedAutosave } from '../../lib/use-autosave.ts';
 import { announce } from '../../ui/announce.tsx';
@@ -27,6 +29,7 @@ export interface SendDialogProps {
 
 export function SendDialog({ draft, written, live, onRefused, onClose }: SendDialogProps) {
   const send = useAct('drafts.send', ['drafts.list', 'drafts.read', 'reviews.list', 'me.read']);
+  const person = usePerson();
   const [note, setNote] = useState('');
   const [failure, setFailure] = useState<string | null>(null);
   const [isSending, setSending] = useState(false);
@@ -47,6 +50,7 @@ export function SendDialog({ draft, written, live, onRefused, onClose }: SendDia
       const sent = await send.act({ params: { id: draft.id }, body: { ...seen, note } });
       if (sent.ok) {
         announce('Sent for review');
+        tellOfDraft(person.id, draft.id, { kind: 'state' });
         onClose();
         return;
       }

@@ -1,8 +1,9 @@
 import { useQueryClient } from '@tanstack/react-query';
 import { useCallback, useEffect, useRef, useState } from 'react';
 import type { DraftPage } from '#api';
-import { type Channel, openChannel } from '../../lib/channel.ts';
+import type { Channel } from '../../lib/channel.ts';
 import { request } from '../../lib/client.ts';
+import { type DraftMessage, openDraftChannel, tellOfDraft } from '../../lib/draft-channel.ts';
 import { usePerson } from '../../lib/session.ts';
 import { type UsedAutosave, useAutosave } from '../../lib/use-autosave.ts';
 import { announce } from '../../ui/announce.tsx';
@@ -15,28 +16,6 @@ import { type UnsentText, unsentTexts } from './unsent-text.ts';
 /** Long enough for another tab of this browser to say that it is there, in milliseconds. Common practice, no source. */
 const TABS_ANSWER_MS = 250;
 
-type TabMessage =
-  | { readonly kind: 'kept'; readonly revision: number }
-  | { readonly kind: 'who' }
-  | { readonly kind: 'here'; readonly key: string };
-
-function readMessage(message: unknown): TabMessage | null {
-  if (typeof message !== 'object' || message === null) return null;
-  const kind: unknown = Reflect.get(message, 'kind');
-  const revision: unknown = Reflect.get(message, 'revision');
-  const key: unknown = Reflect.get(message, 'key');
-  if (kind === 'who') return { kind };
-  if (kind === 'kept' && typeof revision === 'number') return { kind, revision };
-  return kind === 'here' && typeof key === 'string' ? { kind, key } : null;
-}
-
-/** A save may be acknowledged after its page was left; the page that is open now hears of it all the same. */
-function tellKept(name: string, open: Channel<TabMessage> | null, revision: number): void {
-  const channel = open ?? openChannel<TabMessage>(name, readMessage, () => undefined);
-  channel.tell({ kind: 'kept', revision });
-  if (open === null) channel.close();
-}
-
 export interface DraftText {
   readonly text: string;
   readonly saver: UsedAutosave<string, DraftBase, DraftConflict>;
@@ -46,6 +25,8 @@ export interface DraftText {
   readonly put: (text: string, asEdit: boolean) => void;
   /** Ends a conflict: goes on from what the server has, with the text that is to stand. */
   readonly goOnWith: (base: DraftBase, text: string, isServers: boolean) => void;
+  /** Lets go of what stands here and shows the draft as the server has it; gives the words of a failure, else null. */
+  readonly showServers: () => Promise<string | null>;
   /** A text that another tab or an earlier visit left unsent; the person decides. */
   readonly offered: UnsentText | null;
   readonly endOffer: (take: boolean) => void;
@@ -57,13 +38,12 @@ export function useDraftText(page: DraftPage): DraftText {
   const { id } = page.draft;
   const person = usePerson();
   const queries = useQueryClient();
-  const channelName = `draft/${person.id}/${id}`;
   const [text, setText] = useState(page.text);
   const [offers, setOffers] = useState<readonly UnsentText[]>([]);
   const editor = useRef<MountedEditor | null>(null);
   const newest = useRef(page.text);
   const revision = useRef(page.draft.revision);
-  const channel = useRef<Channel<TabMessage> | null>(null);
+  const channel = useRef<Channel<DraftMessage> | null>(null);
   const [unsent] = useState(() =>
     unsentTexts(person.id, id, () => `the text of “${frontValue(newest.current, 'title') || 'a draft'}”`),
   );
@@ -77,7 +57,10 @@ export function useDraftText(page: DraftPage): DraftText {
       const kept = await sendDraftText(id, save);
       if (kept.kind === 'kept') {
         revision.current = kept.base.revision;
-        tellKept(channelName, channel.current, kept.base.revision);
+        const message = { kind: 'kept', revision: kept.base.revision } as const;
+        // A save may be acknowledged after its page was left; the page that is open now hears of it all the same.
+        if (channel.current === null) tellOfDraft(person.id, id, message);
+        else channel.current.tell(message);
       }
       return kept;
     },
@@ -110,33 +93,50 @@ export function useDraftText(page: DraftPage): DraftText {
     saver.resolve(base, isServers ? null : next);
   };
 
-  const { resolve } = saver;
-  const catchUp = useCallback(async () => {
-    const isIdle = () => {
-      const { flight, pending, conflict } = state.current;
-      return flight === null && pending === null && conflict === null;
-    };
-    if (!isIdle()) return;
-    const read = await request('drafts.read', { params: { id } });
-    if (!read.ok || !isIdle()) return;
-    const { draft, hash, mayWrite } = read.value;
-    if (!mayWrite) queries.setQueryData(draftReading(id).queryKey, read.value);
-    else if (draft.revision > revision.current) {
-      revision.current = draft.revision;
-      resolve({ revision: draft.revision, hash }, null);
-      if (read.value.text !== newest.current) {
-        put(read.value.text, false);
+  const { resolve, settle } = saver;
+  const takeServers = useCallback(
+    (read: DraftPage) => {
+      const { draft, hash, mayWrite } = read;
+      if (!mayWrite) announce('This draft changed elsewhere and is not to be written now.');
+      const isNewer = draft.revision > revision.current;
+      if (isNewer) {
+        revision.current = draft.revision;
+        resolve({ revision: draft.revision, hash }, null);
+      }
+      queries.setQueryData(draftReading(id).queryKey, read);
+      if (mayWrite && isNewer && read.text !== newest.current) {
+        put(read.text, false);
         announce('The text was changed elsewhere; this page shows the newest.');
       }
+    },
+    [id, queries, resolve, put],
+  );
+  const catchUp = useCallback(async () => {
+    const read = await request('drafts.read', { params: { id } });
+    const { flight, pending, conflict } = state.current;
+    if (!read.ok || conflict !== null || read.value.draft.revision < revision.current) return;
+    if (flight === null && pending === null) takeServers(read.value);
+    else if (!read.value.mayWrite) {
+      // The save of what is unsent is refused, keeps the text beside the draft, and brings the panel that says so.
+      const after = await settle();
+      if (after.flight === null && after.pending === null && after.conflict === null) await catchUp();
     }
-  }, [id, queries, resolve, put]);
+  }, [id, takeServers, settle]);
+  const showServers = async () => {
+    const read = await request('drafts.read', { params: { id } });
+    if (!read.ok) return read.error.message;
+    const { draft, text: standing, hash } = read.value;
+    goOnWith({ revision: draft.revision, hash }, standing, true);
+    queries.setQueryData(draftReading(id).queryKey, read.value);
+    return null;
+  };
 
   useEffect(() => {
     const living = new Set<string>();
-    const opened = openChannel<TabMessage>(channelName, readMessage, (message) => {
+    const opened = openDraftChannel(person.id, id, (message) => {
       if (message.kind === 'who') opened.tell({ kind: 'here', key: unsent.key });
       else if (message.kind === 'here') living.add(message.key);
-      else if (message.revision > revision.current) void catchUp();
+      else if (message.kind === 'state' || message.revision > revision.current) void catchUp();
     });
     channel.current = opened;
     opened.tell({ kind: 'who' });
@@ -145,14 +145,17 @@ export function useDraftText(page: DraftPage): DraftText {
       setOffers(left.filter((each) => !living.has(each.key)));
     }, TABS_ANSWER_MS);
     const onVisible = () => document.visibilityState === 'visible' && void catchUp();
+    const onFocus = () => void catchUp();
     document.addEventListener('visibilitychange', onVisible);
+    window.addEventListener('focus', onFocus);
     return () => {
       clearTimeout(timer);
       document.removeEventListener('visibilitychange', onVisible);
+      window.removeEventListener('focus', onFocus);
       channel.current = null;
       opened.close();
     };
-  }, [channelName, unsent, catchUp]);
+  }, [person.id, id, unsent, catchUp]);
 
   const offered = offers[0] ?? null;
   const endOffer = (isTaken: boolean) => {
@@ -161,5 +164,5 @@ export function useDraftText(page: DraftPage): DraftText {
     setOffers(offers.slice(1));
     void unsent.forget(offered.key);
   };
-  return { text, saver, change, put, goOnWith, offered, endOffer, editor };
+  return { text, saver, change, put, goOnWith, showServers, offered, endOffer, editor };
 }

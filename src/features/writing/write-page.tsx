@@ -10,16 +10,16 @@ import { WritingDraft } from './writing-draft.tsx';
 
 export function WritePage() {
   const { id = '' } = useParams();
-  const page = useQuery({
-    ...draftReading(id),
-    // What cannot be written here may be decided elsewhere; what is written is never read over.
-    refetchOnWindowFocus: (query) => (query.state.data?.mayWrite === false ? 'always' : false),
-  });
+  const page = useQuery(draftReading(id));
   if (page.data !== undefined) {
     return page.data.mayWrite ? (
       <WritingDraft key={id} page={page.data} />
     ) : (
-      <FrozenDraft key={`${id} ${page.data.draft.revision}`} page={page.data} />
+      <FrozenDraft
+        key={`${id} ${page.data.draft.revision}`}
+        page={page.data}
+        onNews={() => void page.refetch({ cancelRefetch: false })}
+      />
     );
   }
   return page.isError ? (

@@ -33,6 +33,7 @@ export function WritingDraft({ page }: { page: DraftPage }) {
   const decides = useMay('decide reviews');
   const manages = decides || draft.owner.id === person.id;
   const title = frontValue(text, 'title');
+  const shown = conflict?.kind === 'closed' ? { ...draft, state: conflict.saved.state } : draft;
   const facts = useMemo(() => factsOf(page), [page]);
   usePageTitle(`Writing ${title || 'a draft'}`);
   const close = () => setAsked(null);
@@ -58,7 +59,7 @@ export function WritingDraft({ page }: { page: DraftPage }) {
   );
   return (
     <div className="write-page">
-      <WriteBar draft={draft} title={title} standing={<SaveLine standing={saver.standing} />} acts={acts} />
+      <WriteBar draft={shown} title={title} standing={<SaveLine standing={saver.standing} />} acts={acts} />
       {draft.sentBack !== null && (
         <p className="write-news">
           <b>Sent back</b> by {draft.sentBack.by}, {momentText(draft.sentBack.at)}: {draft.sentBack.reason}
@@ -74,6 +75,7 @@ export function WritingDraft({ page }: { page: DraftPage }) {
           mine={text}
           draft={draft}
           onLeave={() => saver.resolve(saver.state.base, null)}
+          onShow={written.showServers}
         />
       )}
       <div className="write-body" hidden={conflict !== null}>
