@@ -81,11 +81,11 @@ describe('the writing page', () => {
   });
 
   test('says once that a text is not kept without a connection, and keeps it when the connection is back', async () => {
-    let isOffline = true;
+    const network = { isThere: false };
     open({
       [READ]: { body: draftPage() },
       [SAVE]: () => {
-        if (isOffline) throw new TypeError('no network');
+        if (!network.isThere) throw new TypeError('no network');
         return { body: { revision: 4, hash: HASH, at: '2026-05-18T10:00:00.000Z' } };
       },
     });
@@ -93,7 +93,7 @@ describe('the writing page', () => {
     expect(await screen.findByText('not yet kept: no connection', { selector: 'span' })).toBeTruthy();
     expect(screen.getByRole('alert').textContent).toContain('not yet kept: no connection');
     expect(kept.size).toBe(1);
-    isOffline = false;
+    network.isThere = true;
     // A save that still waits for its next try would go to the server of a later test.
     fireEvent(window, new Event('online'));
     expect(await screen.findByText('kept')).toBeTruthy();
