@@ -1,5 +1,6 @@
 import { configure, fireEvent, screen, waitFor, within } from '@testing-library/react';
 import { beforeEach, describe, expect, test, vi } from 'vitest';
+import type { Reply } from './fake-server.ts';
 import {
   type Answers,
   draftPage,
@@ -81,19 +82,15 @@ describe('the writing page', () => {
   });
 
   test('says once that a text is not kept without a connection, and keeps it when the connection is back', async () => {
-    const network = { isThere: false };
-    open({
-      [READ]: { body: draftPage() },
-      [SAVE]: () => {
-        if (!network.isThere) throw new TypeError('no network');
-        return { body: { revision: 4, hash: HASH, at: '2026-05-18T10:00:00.000Z' } };
-      },
-    });
+    let answer = (): Reply => {
+      throw new TypeError('no network');
+    };
+    open({ [READ]: { body: draftPage() }, [SAVE]: () => answer() });
     await type('Light.', 'Bright light.');
     expect(await screen.findByText('not yet kept: no connection', { selector: 'span' })).toBeTruthy();
     expect(screen.getByRole('alert').textContent).toContain('not yet kept: no connection');
     expect(kept.size).toBe(1);
-    network.isThere = true;
+    answer = () => ({ body: { revision: 4, hash: HASH, at: '2026-05-18T10:00:00.000Z' } });
     // A save that still waits for its next try would go to the server of a later test.
     fireEvent(window, new Event('online'));
     expect(await screen.findByText('kept')).toBeTruthy();
